@@ -1,0 +1,212 @@
+/**
+ * The values that pass from the solver to everything above it. `SolutionRecord` is `solution.json`, version 1:
+ * it may grow keys, but the meaning of a key never changes.
+ */
+import type { TimeScale, VelocitySet } from '../observations/types.js';
+
+/** A number with its uncertainty. `lower` and `upper` bound the central 68.3 %; an unknown is `null` with a `why`. */
+export interface Quantity {
+  readonly value: number | null;
+  readonly sigma: number | null;
+  readonly lower: number | null;
+  readonly upper: number | null;
+  readonly unit: string;
+  readonly fixed?: true;
+  readonly why?: string;
+}
+
+/** Elements of one companion in the units used inside. */
+export interface OrbitElements {
+  readonly periodDays: number;
+  readonly eccentricity: number; // 0 <= e < 1
+  /** Argument of periastron of the star's orbit about the barycentre. */
+  readonly argPeriastronStarRad: number;
+  readonly timePeriastronBjdTdb: number;
+  readonly semiAmplitudeMps: number;
+}
+
+/** A period that explains the data nearly as well, refitted. `deltaLogLikelihood` is (rival - reported), usually <= 0. */
+export interface Rival {
+  readonly period: number; // d
+  /** e.g. `sidereal-day alias`, `solar-day alias`, `synodic-month alias`, `year alias`, `half period`, `double period`, `other peak`. */
+  readonly kind: string;
+  readonly deltaLogLikelihood: number;
+  readonly eccentricity: number;
+}
+
+export interface Evidence {
+  /** ln L gained by adding this companion to the rest of the model (refitted without it). */
+  readonly deltaLogLikelihood: number;
+  readonly deltaBic: number; // positive favours the companion
+  readonly falseAlarmProbability: number;
+  /** How the false-alarm probability was obtained, in words. */
+  readonly falseAlarmMethod: string;
+  /** Circular against eccentric: ln L and BIC of the eccentric minus the circular fit, and the Lucy-Sweeney probability. */
+  readonly eccentricity: {
+    readonly deltaLogLikelihood: number;
+    readonly deltaBic: number; // BIC(circular) - BIC(eccentric); positive favours e > 0
+    readonly lucySweeneyProbability: number | null;
+    readonly eccentricFit: { readonly eccentricity: Quantity; readonly argumentOfPeriastron: Quantity } | null;
+  } | null;
+}
+
+export type ElementKey =
+  | 'period' | 'eccentricity' | 'argumentOfPeriastron' | 'timeOfPeriastron' | 'timeOfInferiorConjunction' | 'semiAmplitude'; // prettier-ignore
+
+/** Keys of `derived`; a quantity that needs an unknown (star mass, radius) is null with a `why`. */
+export const DERIVED_KEYS = [
+  'semiMajorAxis', // au, relative orbit
+  'starOrbitSemiMajorAxis', // au, a_star sin i
+  'massFunction', // M_sun
+  'minimumMass', // M_jup, m sin i solved exactly with i = 90 deg
+  'mass', // M_jup, when the inclination is known
+  'periastronDistance', // au
+  'apastronDistance', // au
+  'periastronSpeed', // km/s, relative orbit
+  'apastronSpeed', // km/s
+  'nextInferiorConjunction', // BJD_TDB, first after the last observation
+  'nextPeriastron', // BJD_TDB
+  'transitProbability', // 0..1
+  'transitDuration', // h, central transit, first to last contact of the star's disc
+  'transitDepth', // ppm, for a body of 1 R_jup
+  'astrometricSignature', // microarcsec at 10 pc (scales inversely with distance), minimum
+  'equilibriumTemperature', // K, zero albedo, full redistribution, orbit-averaged flux
+  'irradiation', // Earth's
+  'hillRadius', // au
+] as const;
+export type DerivedKey = (typeof DERIVED_KEYS)[number];
+
+export interface CompanionRecord {
+  readonly letter: string;
+  readonly elements: Readonly<Record<ElementKey, Quantity>>;
+  readonly derived: Readonly<Record<DerivedKey, Quantity>>;
+  readonly circular: boolean;
+  readonly evidence: Evidence;
+  readonly rivals: readonly Rival[];
+}
+
+export interface InstrumentRecord {
+  readonly name: string;
+  readonly count: number;
+  readonly zeroPoint: Quantity; // m/s
+  readonly jitter: Quantity; // m/s
+  readonly rms: number; // m/s, of the residuals
+}
+
+/** A signal that clears only the weaker thresholds: reported, not fitted. */
+export interface CandidateRecord {
+  readonly period: number;
+  readonly semiAmplitude: number;
+  readonly falseAlarmProbability: number;
+  readonly deltaBic: number;
+}
+
+/** Two companions side by side. */
+export interface NeighbourRecord {
+  readonly letters: readonly [string, string];
+  readonly periodRatio: number;
+  /** e.g. `2:1`, when the ratio is within 1 % of p:q with p, q <= 5; otherwise null. */
+  readonly nearRatio: string | null;
+  readonly mutualHillSpacing: Quantity; // mutual Hill radii
+}
+
+export interface SolutionRecord {
+  readonly schema: 'tugline/solution';
+  readonly version: 1;
+  readonly target: string;
+  readonly timeScale: TimeScale;
+  readonly epoch: number;
+  readonly star: { readonly mass: Quantity; readonly radius: Quantity; readonly effectiveTemperature: Quantity };
+  readonly companions: readonly CompanionRecord[];
+  readonly candidates: readonly CandidateRecord[];
+  readonly neighbours: readonly NeighbourRecord[];
+  readonly velocity: {
+    readonly instruments: readonly InstrumentRecord[];
+    readonly slope: Quantity; // m/s/yr
+    readonly curvature: Quantity; // m/s/yr^2
+  };
+  readonly fit: {
+    readonly status: 'converged' | 'iteration-limit' | 'failed';
+    readonly reason: string;
+    readonly usable: boolean;
+    readonly logLikelihood: number;
+    readonly chiSquare: number;
+    readonly degreesOfFreedom: number;
+    readonly freeParameters: number;
+    readonly bic: number;
+    readonly aicc: number | null;
+    readonly rms: number;
+    readonly covariance: { readonly names: readonly string[]; readonly matrix: readonly (readonly number[])[] };
+  };
+  /** `null` with `--quick`, and until the posterior is sampled. */
+  readonly posterior: null | {
+    readonly method: string; readonly chains: number; readonly draws: number; readonly rHatMax: number;
+    readonly bulkEssMin: number; readonly tailEssMin: number; readonly divergences: number;
+  }; // prettier-ignore
+  /** Sentences: what the numbers assume. */
+  readonly assumptions: readonly string[];
+  readonly warnings: readonly { readonly code: string; readonly message: string }[];
+  readonly provenance: {
+    readonly program: 'tugline';
+    readonly version: string;
+    readonly node: string;
+    readonly seed: number;
+    readonly command: readonly string[];
+    readonly inputs: readonly { readonly path: string; readonly sha256: string; readonly rows: number; readonly used: number }[];
+  };
+}
+
+/** One peak of a periodogram. */
+export interface PeriodPeak {
+  readonly periodDays: number;
+  /** 1 - chi2 / chi2_0, in 0..1. */
+  readonly power: number;
+  readonly deltaLogLikelihood: number;
+  readonly falseAlarmProbability: number;
+  readonly semiAmplitudeMps: number;
+  /** What the peak is, seen from the strongest one: `strongest`, an alias kind, or `independent`. */
+  readonly kind: string;
+}
+
+/** The periodogram at one stage of the search: with `companionsFitted` companions, drift and zero points refitted at each frequency. */
+export interface SearchStage {
+  readonly title: string;
+  readonly companionsFitted: number;
+  /** Uniform grid, 1/d, ascending. */
+  readonly frequenciesPerDay: Float64Array;
+  /** Normalised power 0..1 at each frequency. */
+  readonly power: Float64Array;
+  readonly levels: readonly { readonly falseAlarmProbability: number; readonly power: number }[];
+  readonly peaks: readonly PeriodPeak[];
+  /** Best eccentric shape found by the Keplerian scan at this stage, if it beats the sinusoid. */
+  readonly eccentricPeak: { readonly periodDays: number; readonly eccentricity: number; readonly deltaLogLikelihood: number; readonly falseAlarmProbability: number } | null; // prettier-ignore
+}
+
+/** Power of the window function |sum w exp(2 pi i f t)|^2 / (sum w)^2 on a grid of its own. */
+export interface WindowFunction {
+  readonly frequenciesPerDay: Float64Array;
+  readonly power: Float64Array;
+  readonly peaks: readonly { readonly frequencyPerDay: number; readonly periodDays: number; readonly power: number; readonly name: string | null }[]; // prettier-ignore
+}
+
+/** The model at its best point, in the units used inside; enough to evaluate it anywhere. */
+export interface VelocityModelPoint {
+  readonly companions: readonly OrbitElements[];
+  readonly letters: readonly string[];
+  readonly zeroPointsMps: Float64Array; // one per instrument
+  readonly jittersMps: Float64Array; // one per instrument
+  readonly epochBjdTdb: number;
+  readonly slopeMpsPerDay: number;
+  readonly curvatureMpsPerDay2: number;
+}
+
+/** Everything that `solve` found: the record for people and machines, and the arrays that charts and tables need. */
+export interface Solved {
+  readonly record: SolutionRecord;
+  readonly velocities: VelocitySet;
+  readonly best: VelocityModelPoint;
+  /** Observed minus model (zero point, drift, companions), m/s, in the order of `velocities`. */
+  readonly residualsMps: Float64Array;
+  readonly stages: readonly SearchStage[];
+  readonly window: WindowFunction;
+}
