@@ -3,6 +3,7 @@
  * it may grow keys, but the meaning of a key never changes.
  */
 import type { TimeScale, VelocitySet } from '../observations/types.js';
+import type { VelocityModelPoint } from '../signals/velocity-model.js';
 
 /** A number with its uncertainty. `lower` and `upper` bound the central 68.3 %; an unknown is `null` with a `why`. */
 export interface Quantity {
@@ -13,16 +14,6 @@ export interface Quantity {
   readonly unit: string;
   readonly fixed?: true;
   readonly why?: string;
-}
-
-/** Elements of one companion in the units used inside. */
-export interface OrbitElements {
-  readonly periodDays: number;
-  readonly eccentricity: number; // 0 <= e < 1
-  /** Argument of periastron of the star's orbit about the barycentre. */
-  readonly argPeriastronStarRad: number;
-  readonly timePeriastronBjdTdb: number;
-  readonly semiAmplitudeMps: number;
 }
 
 /** A period that explains the data nearly as well, refitted. `deltaLogLikelihood` is (rival - reported), usually <= 0. */
@@ -187,17 +178,6 @@ export interface WindowFunction {
   readonly frequenciesPerDay: Float64Array;
   readonly power: Float64Array;
   readonly peaks: readonly { readonly frequencyPerDay: number; readonly periodDays: number; readonly power: number; readonly name: string | null }[]; // prettier-ignore
-}
-
-/** The model at its best point, in the units used inside; enough to evaluate it anywhere. */
-export interface VelocityModelPoint {
-  readonly companions: readonly OrbitElements[];
-  readonly letters: readonly string[];
-  readonly zeroPointsMps: Float64Array; // one per instrument
-  readonly jittersMps: Float64Array; // one per instrument
-  readonly epochBjdTdb: number;
-  readonly slopeMpsPerDay: number;
-  readonly curvatureMpsPerDay2: number;
 }
 
 /** Everything that `solve` found: the record for people and machines, and the arrays that charts and tables need. */
