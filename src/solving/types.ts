@@ -37,7 +37,10 @@ export interface Evidence {
     readonly deltaLogLikelihood: number;
     readonly deltaBic: number; // BIC(circular) - BIC(eccentric); positive favours e > 0
     readonly lucySweeneyProbability: number | null;
-    readonly eccentricFit: { readonly eccentricity: Quantity; readonly argumentOfPeriastron: Quantity } | null;
+    readonly eccentricFit: {
+      readonly eccentricity: Quantity;
+      readonly argumentOfPeriastron: Quantity;
+    } | null;
   } | null;
 }
 
@@ -107,7 +110,11 @@ export interface SolutionRecord {
   readonly target: string;
   readonly timeScale: TimeScale;
   readonly epoch: number;
-  readonly star: { readonly mass: Quantity; readonly radius: Quantity; readonly effectiveTemperature: Quantity };
+  readonly star: {
+    readonly mass: Quantity;
+    readonly radius: Quantity;
+    readonly effectiveTemperature: Quantity;
+  };
   readonly companions: readonly CompanionRecord[];
   readonly candidates: readonly CandidateRecord[];
   readonly neighbours: readonly NeighbourRecord[];
@@ -127,7 +134,10 @@ export interface SolutionRecord {
     readonly bic: number;
     readonly aicc: number | null;
     readonly rms: number;
-    readonly covariance: { readonly names: readonly string[]; readonly matrix: readonly (readonly number[])[] };
+    readonly covariance: {
+      readonly names: readonly string[];
+      readonly matrix: readonly (readonly number[])[];
+    };
   };
   /** `null` with `--quick`, and until the posterior is sampled. */
   readonly posterior: null | {
@@ -143,7 +153,12 @@ export interface SolutionRecord {
     readonly node: string;
     readonly seed: number;
     readonly command: readonly string[];
-    readonly inputs: readonly { readonly path: string; readonly sha256: string; readonly rows: number; readonly used: number }[];
+    readonly inputs: readonly {
+      readonly path: string;
+      readonly sha256: string;
+      readonly rows: number;
+      readonly used: number;
+    }[];
   };
 }
 

@@ -1,0 +1,187 @@
+/**
+ * How many companions, and which: one at a time from the strongest signal on, everything refitted together whenever
+ * one is added, earlier choices questioned again, until what is left clears the thresholds no more.
+ */
+import type { CompanionChoice } from '../observations/types.js';
+import { Explorer, byBic, type PlannedFit } from './explorer.js';
+import { powerOfGain, shapeFalseAlarm, sinusoidFalseAlarm } from './false-alarm.js';
+import { ROUGH } from './fit-model.js';
+import type { ModelPlan } from './model-builder.js';
+import { searchRange, type SearchRange } from './search-range.js';
+import type { StageSearch } from './search-stage.js';
+
+/** Thresholds a companion must clear, and the weaker ones of a candidate. */
+export const ACCEPTED = { falseAlarmProbability: 1e-3, deltaBic: 10 } as const;
+export const CANDIDATE = { falseAlarmProbability: 1e-2, deltaBic: 5 } as const;
+
+/** Share of the false-alarm budget given to sinusoids; the rest goes to eccentric shapes. */
+const SINUSOID_SHARE = 0.8;
+
+export interface Addition {
+  readonly planned: PlannedFit;
+  readonly deltaLogLikelihood: number;
+  readonly deltaBic: number;
+  readonly falseAlarmProbability: number;
+}
+
+export interface FoundStage {
+  readonly search: StageSearch;
+  /** Number of companions in the model that was refitted at each trial. */
+  readonly companionsFitted: number;
+  readonly addition: Addition | null;
+  /** Other additions that were fitted thoroughly, best BIC first. */
+  readonly alternatives: readonly PlannedFit[];
+}
+
+export interface Found {
+  readonly best: PlannedFit;
+  readonly stages: readonly FoundStage[];
+  /** Signals that clear only the weaker thresholds. */
+  readonly candidate: Addition | null;
+}
+
+/** Number of fitted companions when the case names it; `null` leaves it to the evidence. */
+function wantedCount(explorer: Explorer): number | null {
+  const { companions } = explorer.theCase;
+  if (companions === 'auto') return null;
+  return typeof companions === 'number' ? companions : companions.length;
+}
+
+export function findCompanions(explorer: Explorer, onStage: (done: number) => void): Found {
+  const { theCase } = explorer;
+  const wanted = wantedCount(explorer);
+  const limit = wanted ?? theCase.maximumCompanions;
+  const listed: readonly CompanionChoice[] = typeof theCase.companions === 'object' ? theCase.companions : [];
+  const free = explorer.builder.data.timesDays.length - explorer.builder.data.instrumentCount;
+  let best = explorer.withBestDrift(
+    { companions: [], drift: explorer.drifts[0]! },
+    explorer.builder.emptyPoint(),
+  );
+  const stages: FoundStage[] = [];
+  let candidate: Addition | null = null;
+  for (let count = 0; count <= limit; count++) {
+    const choice = listed[count] ?? null;
+    const range = choice === null ? explorer.range : rangeOfChoice(explorer, choice);
+    const search = explorer.search(best, range);
+    if (count === limit || free < 3 * (count + 1)) {
+      stages.push({ search, companionsFitted: count, addition: null, alternatives: [] });
+      break;
+    }
+    const { addition, alternatives } = nextAddition(explorer, best, search, choice, range);
+    stages.push({ search, companionsFitted: count, addition, alternatives });
+    onStage(count + 1);
+    if (addition === null) break;
+    if (wanted === null && !clears(addition, ACCEPTED)) {
+      if (clears(addition, CANDIDATE)) candidate = addition;
+      break;
+    }
+    best = questionEarlierChoices(explorer, explorer.settleStructure(addition.planned), listed);
+  }
+  return { best, stages, candidate };
+}
+
+export function clears(
+  addition: Addition,
+  thresholds: { falseAlarmProbability: number; deltaBic: number },
+): boolean {
+  return (
+    addition.falseAlarmProbability < thresholds.falseAlarmProbability &&
+    addition.deltaBic > thresholds.deltaBic
+  );
+}
+
+function nextAddition(
+  explorer: Explorer,
+  base: PlannedFit,
+  search: StageSearch,
+  choice: CompanionChoice | null,
+  range: SearchRange,
+): { addition: Addition | null; alternatives: readonly PlannedFit[] } {
+  let fits = [...explorer.bestAddition(base, search, choice)];
+  if (base.plan.drift > 0 && explorer.drifts.includes(0)) {
+    // A drift may have swallowed part of a long period: look without it too, and let the BIC decide.
+    const bare = explorer.fit({ ...base.plan, drift: 0 }, explorer.portable(base));
+    fits.push(...explorer.bestAddition(bare, explorer.search(bare, range, false), choice));
+  }
+  fits = fits.sort(byBic);
+  const top = fits[0];
+  if (top === undefined) return { addition: null, alternatives: [] };
+  const settled = explorer.settleStructure(top);
+  return { addition: measure(explorer, base, settled, fits, search), alternatives: fits.slice(1) };
+}
+
+/** Evidence of an addition over the model without it. */
+export function measure(
+  explorer: Explorer,
+  base: PlannedFit,
+  top: PlannedFit,
+  fits: readonly PlannedFit[],
+  search: StageSearch,
+): Addition {
+  const n = explorer.builder.data.timesDays.length;
+  const baseline = base.fit.logLikelihood;
+  const gainOf = (circular: boolean): number =>
+    fits
+      .filter(
+        (planned) =>
+          planned.plan.companions.at(-1)!.circular === circular && planned.plan.drift <= base.plan.drift,
+      )
+      .reduce((gain, planned) => Math.max(gain, planned.fit.logLikelihood - baseline), 0);
+  const strongest = search.peaks[0]?.power ?? 0;
+  const power = Math.max(strongest, powerOfGain(gainOf(true), n));
+  const sinusoid = sinusoidFalseAlarm(power, search.setting) / SINUSOID_SHARE;
+  const shape = shapeFalseAlarm(gainOf(false), search.setting) / (1 - SINUSOID_SHARE);
+  return {
+    planned: top,
+    deltaLogLikelihood: top.fit.logLikelihood - baseline,
+    deltaBic: base.fit.bic - top.fit.bic,
+    falseAlarmProbability: Math.min(1, sinusoid, shape),
+  };
+}
+
+/** Searches anew for each earlier companion with the others in place; adopts what lowers the BIC. */
+function questionEarlierChoices(
+  explorer: Explorer,
+  start: PlannedFit,
+  listed: readonly CompanionChoice[],
+): PlannedFit {
+  let best = start;
+  for (let pass = 0; pass < 2; pass++) {
+    const before = best.fit.bic;
+    for (let c = 0; c < best.plan.companions.length - (pass === 0 ? 1 : 0); c++) {
+      if (listed[c] !== undefined || best.plan.companions.length < 2) continue;
+      const others = explorer.without(best, c);
+      const withShapes = explorer.portable(best).companions[c]!.eccentricity > 0.3;
+      const fits = explorer.bestAddition(others, explorer.search(others, explorer.range, withShapes), null);
+      const top = fits[0];
+      if (top === undefined) continue;
+      const settled = explorer.settleStructure(top);
+      if (settled.fit.bic < best.fit.bic - 1e-4) best = settled;
+    }
+    if (best.fit.bic > before - 1e-3) break;
+  }
+  return best;
+}
+
+/** Search range of a companion whose period the case states. */
+function rangeOfChoice(explorer: Explorer, choice: CompanionChoice): SearchRange {
+  const { period } = choice.elements;
+  if (period === undefined) return explorer.range;
+  const span = explorer.range.spanDays;
+  const bounds =
+    period.kind === 'range'
+      ? { low: period.low, high: period.high }
+      : period.kind === 'prior'
+        ? { low: Math.max(1e-3, period.value - 5 * period.sigma), high: period.value + 5 * period.sigma }
+        : { low: period.value * (1 - 1e-6), high: period.value * (1 + 1e-6) };
+  return searchRange(span, bounds);
+}
+
+/** A quick fit of a plan from a start: for rivals and tests of structure. */
+export function roughFit(
+  explorer: Explorer,
+  plan: ModelPlan,
+  start: ReturnType<Explorer['portable']>,
+): PlannedFit {
+  return explorer.fit(plan, start, ROUGH);
+}
