@@ -82,7 +82,12 @@ export interface VelocitySet {
   /** Index into `tables` per row, and line in that file. */
   readonly tableOf: Uint16Array;
   readonly lines: Uint32Array;
-  readonly tables: readonly { readonly path: string; readonly sha256: string; readonly rows: number; readonly used: number }[];
+  readonly tables: readonly {
+    readonly path: string;
+    readonly sha256: string;
+    readonly rows: number;
+    readonly used: number;
+  }[];
   readonly timeScale: TimeScale;
   readonly notices: readonly (TableNotice & { readonly path: string })[];
 }
@@ -192,5 +197,7 @@ export interface TableRequest {
   readonly timeOffsetDays: number | null;
   readonly velocityUnit: 'm/s' | 'km/s' | null;
   /** Column labels or 1-based positions, e.g. `{ time: 'BJD', velocity: '2' }`. */
-  readonly columns: Partial<Readonly<Record<'time' | 'velocity' | 'velocity-error' | 'instrument' | 'quality', string>>>;
+  readonly columns: Partial<
+    Readonly<Record<'time' | 'velocity' | 'velocity-error' | 'instrument' | 'quality', string>>
+  >;
 }

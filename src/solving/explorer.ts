@@ -109,7 +109,7 @@ export class Explorer {
 
   /** Distinct rough fits, the best few of them (by ln L of the eccentric and by BIC) fitted thoroughly, best BIC first. */
   finalists(roughs: readonly PlannedFit[], count: number = FINALISTS): PlannedFit[] {
-    const usable = roughs.filter((rough) => rough.fit.status !== 'failed' && this.#inRange(rough));
+    const usable = roughs.filter((rough) => rough.fit.status !== 'failed' && this.isInRange(rough));
     const chosen: PlannedFit[] = [];
     for (const order of [byBic, byLikelihood]) {
       let taken = 0;
@@ -124,7 +124,8 @@ export class Explorer {
     return fits.filter((planned) => planned.fit.status !== 'failed').sort(byBic);
   }
 
-  #inRange(planned: PlannedFit): boolean {
+  /** Whether every orbit of a fit is one that could exist and was searched for. */
+  isInRange(planned: PlannedFit): boolean {
     return this.portable(planned).companions.every(
       (companion) =>
         companion.periodDays < LONGEST_FIT * this.range.longestPeriodDays &&
@@ -160,7 +161,7 @@ export class Explorer {
     for (let turn = 0; turn < 8; turn++) {
       let better: PlannedFit | null = null;
       const consider = (other: PlannedFit, margin: number): void => {
-        if (other.fit.status === 'failed' || !this.#inRange(other)) return;
+        if (other.fit.status === 'failed' || !this.isInRange(other)) return;
         if (other.fit.bic < (better ?? best).fit.bic - margin) better = other;
       };
       const portable = this.portable(best);

@@ -3,19 +3,23 @@
  * one is added, earlier choices questioned again, until what is left clears the thresholds no more.
  */
 import type { CompanionChoice } from '../observations/types.js';
-import { Explorer, byBic, type PlannedFit } from './explorer.js';
-import { powerOfGain, shapeFalseAlarm, sinusoidFalseAlarm } from './false-alarm.js';
-import { ROUGH } from './fit-model.js';
-import type { ModelPlan } from './model-builder.js';
+import { Explorer, byBic, byLikelihood, type PlannedFit } from './explorer.js';
+import {
+  powerOfGain,
+  shapeFalseAlarm,
+  sinusoidFalseAlarm,
+  weightedVariance,
+  type FalseAlarmSetting,
+} from './false-alarm.js';
 import { searchRange, type SearchRange } from './search-range.js';
-import type { StageSearch } from './search-stage.js';
+import { backgroundOf, type StageSearch } from './search-stage.js';
 
 /** Thresholds a companion must clear, and the weaker ones of a candidate. */
 export const ACCEPTED = { falseAlarmProbability: 1e-3, deltaBic: 10 } as const;
 export const CANDIDATE = { falseAlarmProbability: 1e-2, deltaBic: 5 } as const;
 
 /** Share of the false-alarm budget given to sinusoids; the rest goes to eccentric shapes. */
-const SINUSOID_SHARE = 0.8;
+export const SINUSOID_SHARE = 0.8;
 
 export interface Addition {
   readonly planned: PlannedFit;
@@ -31,6 +35,8 @@ export interface FoundStage {
   readonly addition: Addition | null;
   /** Other additions that were fitted thoroughly, best BIC first. */
   readonly alternatives: readonly PlannedFit[];
+  /** The eccentric addition that gains most. */
+  readonly bestShape: { readonly periodDays: number; readonly eccentricity: number; readonly gain: number } | null;
 }
 
 export interface Found {
@@ -64,11 +70,12 @@ export function findCompanions(explorer: Explorer, onStage: (done: number) => vo
     const range = choice === null ? explorer.range : rangeOfChoice(explorer, choice);
     const search = explorer.search(best, range);
     if (count === limit || free < 3 * (count + 1)) {
-      stages.push({ search, companionsFitted: count, addition: null, alternatives: [] });
+      stages.push({ search, companionsFitted: count, addition: null, alternatives: [], bestShape: null });
       break;
     }
     const { addition, alternatives } = nextAddition(explorer, best, search, choice, range);
-    stages.push({ search, companionsFitted: count, addition, alternatives });
+    const all = addition === null ? alternatives : [addition.planned, ...alternatives];
+    stages.push({ search, companionsFitted: count, addition, alternatives, bestShape: bestShapeOf(explorer, best, all) });
     onStage(count + 1);
     if (addition === null) break;
     if (wanted === null && !clears(addition, ACCEPTED)) {
@@ -108,6 +115,17 @@ function nextAddition(
   if (top === undefined) return { addition: null, alternatives: [] };
   const settled = explorer.settleStructure(top);
   return { addition: measure(explorer, base, settled, fits, search), alternatives: fits.slice(1) };
+}
+
+function bestShapeOf(explorer: Explorer, base: PlannedFit, fits: readonly PlannedFit[]): FoundStage['bestShape'] {
+  const eccentric = fits.filter((planned) => !planned.plan.companions.at(-1)!.circular).sort(byLikelihood)[0];
+  if (eccentric === undefined) return null;
+  const companion = explorer.portable(eccentric).companions.at(-1)!;
+  return {
+    periodDays: companion.periodDays,
+    eccentricity: companion.eccentricity,
+    gain: eccentric.fit.logLikelihood - base.fit.logLikelihood,
+  };
 }
 
 /** Evidence of an addition over the model without it. */
@@ -177,11 +195,14 @@ function rangeOfChoice(explorer: Explorer, choice: CompanionChoice): SearchRange
   return searchRange(span, bounds);
 }
 
-/** A quick fit of a plan from a start: for rivals and tests of structure. */
-export function roughFit(
-  explorer: Explorer,
-  plan: ModelPlan,
-  start: ReturnType<Explorer['portable']>,
-): PlannedFit {
-  return explorer.fit(plan, start, ROUGH);
+/** What the false-alarm probability of one more companion on top of a fit depends on. */
+export function falseAlarmSettingOf(explorer: Explorer, base: PlannedFit): FalseAlarmSetting {
+  const background = backgroundOf(base.fit);
+  const { grid } = explorer.range;
+  return {
+    dataCount: background.timesDays.length,
+    backgroundCount: background.basis.length,
+    bandwidthPerDay: (grid.count - 1) * grid.stepPerDay,
+    timeVarianceDays2: weightedVariance(background.timesDays, background.weights),
+  };
 }

@@ -252,6 +252,46 @@ export class VelocityProblem implements LeastSquaresProblem {
     return -0.5 * sum;
   }
 
+  /** Instruments whose jitter is free: their places in a vector (parameters, jitters). */
+  get freeJitters(): number[] {
+    return this.structure.jitters.flatMap((jitter, instrument) => (jitter.highMps > jitter.lowMps ? [instrument] : []));
+  }
+
+  /**
+   * Gradient of `logDensity` by the parameters, then by the free jitters (`freeJitters`), analytic.
+   *
+   * The density depends on a jitter through its square, so it is defined for negative values too (mirror image).
+   *
+   * @param gradient - (freeCount), overwritten
+   * @returns false outside the domain
+   */
+  logDensityGradient(point: ModelPoint, gradient: Float64Array): boolean {
+    const p = this.parameterCount;
+    const { sigmasMps, instrumentOf } = this.data;
+    const n = sigmasMps.length;
+    const residuals = new Float64Array(this.residualCount);
+    const jacobian = new Float64Array(this.residualCount * p);
+    this.setJitters(point.jittersMps);
+    if (!this.evaluate(point.parameters, residuals, jacobian)) return false;
+    gradient.fill(0);
+    for (let i = 0; i < this.residualCount; i++) {
+      const r = residuals[i]!;
+      for (let j = 0; j < p; j++) gradient[j]! -= jacobian[i * p + j]! * r;
+    }
+    this.freeJitters.forEach((instrument, index) => {
+      const s = point.jittersMps[instrument]!;
+      let sum = 0;
+      for (let i = 0; i < n; i++) {
+        if (instrumentOf[i] !== instrument) continue;
+        const variance = sigmasMps[i]! * sigmasMps[i]! + s * s;
+        sum += (residuals[i]! * residuals[i]! - 1) / variance;
+      }
+      const prior = this.structure.jitters[instrument]!.prior;
+      gradient[p + index] = s * sum - (prior === null ? 0 : (s - prior.centre) / prior.sigma ** 2);
+    });
+    return true;
+  }
+
   /** Log-likelihood plus the user's Gaussian priors (without their constants). Its maximum is what is reported. */
   logDensity(point: ModelPoint): number {
     const priorRows = this.residualCount - this.data.velocitiesMps.length;

@@ -6,7 +6,7 @@ import type { ModelFit } from './fit-model.js';
 import { weightedVariance, type FalseAlarmSetting } from './false-alarm.js';
 import { makeBackground, type LinearBackground } from './linear-background.js';
 import type { RelativeElements } from './parametrisations/parametrisation.js';
-import { Periodogram, sinusoidAt, type FrequencyGrid } from './periodogram.js';
+import { Periodogram, sinusoidAt, type FrequencyGrid, type SinusoidFit } from './periodogram.js';
 import { scanShapes, type ShapeStart } from './shape-scan.js';
 
 export interface Peak {
@@ -142,25 +142,27 @@ function refinePeak(background: LinearBackground, frequency: number, step: numbe
   }
   const best = 0.5 * (low + high);
   const fit = sinusoidAt(background, best);
-  const amplitude = Math.hypot(fit.cosAmplitude, fit.sinAmplitude);
-  // a cos(wt) + b sin(wt) = K cos(wt + phase), phase = atan2(-b, a); for e = 0 the mean longitude at the epoch is the phase.
+  const start = sinusoidElements(best, fit);
+  return { frequencyPerDay: best, power: fit.power, amplitudeMps: start.semiAmplitudeMps, start };
+}
+
+/**
+ * A sinusoid as a circular orbit: a cos(wt) + b sin(wt) = K cos(wt + phase) with phase = atan2(-b, a), which is the mean
+ * longitude at the epoch.
+ */
+export function sinusoidElements(frequencyPerDay: number, fit: SinusoidFit): RelativeElements {
   const phase = Math.atan2(-fit.sinAmplitude, fit.cosAmplitude);
-  const periodDays = 1 / best;
   return {
-    frequencyPerDay: best,
-    power: fit.power,
-    amplitudeMps: amplitude,
-    start: {
-      periodDays,
-      eccentricity: 0,
-      argPeriastronStarRad: Math.PI / 2,
-      timePeriastronDays: ((Math.PI / 2 - phase) * periodDays) / (2 * Math.PI),
-      semiAmplitudeMps: amplitude,
-    },
+    periodDays: 1 / frequencyPerDay,
+    eccentricity: 0,
+    argPeriastronStarRad: Math.PI / 2,
+    timePeriastronDays: (Math.PI / 2 - phase) / (2 * Math.PI * frequencyPerDay),
+    semiAmplitudeMps: Math.hypot(fit.cosAmplitude, fit.sinAmplitude),
   };
 }
 
-function shapeElements(start: ShapeStart): RelativeElements & { power: number } {
+/** A start of the scan as elements. */
+export function shapeElements(start: ShapeStart): RelativeElements & { power: number } {
   const periodDays = 1 / start.frequencyPerDay;
   return {
     periodDays,

@@ -76,7 +76,10 @@ export interface CompanionRecord {
   readonly derived: Readonly<Record<DerivedKey, Quantity>>;
   readonly circular: boolean;
   readonly evidence: Evidence;
+  /** Best first; those whose ln L falls short by more than 12 are dismissed. */
   readonly rivals: readonly Rival[];
+  /** How many aliases and other peaks were refitted for this companion. */
+  readonly rivalsTried?: number;
 }
 
 export interface InstrumentRecord {

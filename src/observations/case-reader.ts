@@ -1,0 +1,207 @@
+/** From a case file to a `Case`; and the same from bare tables and options. */
+import { dirname, isAbsolute, join } from 'node:path';
+import { InputDataError, UsageError } from '../errors.js';
+import { addSchemaIssues } from './case-issues.js';
+import { mockPlan } from './case-mock.js';
+import {
+  caseSchema,
+  DEFAULT_MOST_COMPANIONS,
+  isZero,
+  type CaseEntry,
+  type CompanionEntry,
+  type TableEntry,
+} from './case-schema.js';
+import { readYaml } from './case-yaml.js';
+import { IssueList } from './issues.js';
+import { parseMeasured } from './quantity.js';
+import { readTextFile } from './read-text.js';
+import { didYouMean } from './suggest.js';
+import { requestFor } from './table-reader.js';
+import { fileStem, quoted, withoutControls } from './text.js';
+import type {
+  Case,
+  CompanionChoice,
+  ElementChoice,
+  ElementName,
+  InstrumentChoice,
+  Measured,
+  TableRequest,
+  VelocitySet,
+} from './types.js';
+import type { QuantityKind } from './units.js';
+
+/** Larger case files are refused unread. */
+export const LARGEST_CASE_BYTES = 1e6;
+
+/**
+ * Reads a case file; table paths in it are taken from its own folder.
+ *
+ * @throws InputDataError with all problems, each with line, column and key
+ */
+export async function readCase(path: string): Promise<Case> {
+  const { text } = await readTextFile(path, LARGEST_CASE_BYTES);
+  return parseCase(text, path);
+}
+
+/** What `readCase` does once the file is read. @throws InputDataError with all problems of the text */
+export function parseCase(text: string, path: string): Case {
+  const issues = new IssueList(path);
+  if (text.length > LARGEST_CASE_BYTES)
+    issues.add({ code: 'too-large', message: `a case has at most ${LARGEST_CASE_BYTES} characters` });
+  if (text.includes('\0'))
+    issues.add({
+      code: 'binary-file',
+      message: 'this is a binary file (it contains NUL characters), not a case',
+    });
+  const yaml = issues.count > 0 ? null : readYaml(text.replace(/^\ufeff/, ''), issues);
+  if (yaml === null) throw new InputDataError(issues.list());
+  if (yaml.value === null || yaml.value === undefined)
+    issues.add({
+      code: 'empty-file',
+      message: 'the case is empty',
+      hint: 'it needs at least: target and tables',
+    });
+  else {
+    const result = caseSchema.safeParse(yaml.value);
+    if (result.success) return toCase(result.data, path);
+    addSchemaIssues(result.error.issues, yaml, issues);
+  }
+  throw new InputDataError(issues.list());
+}
+
+function toCase(entry: CaseEntry, path: string): Case {
+  const circular = entry.circular ?? 'auto';
+  const companions = entry.companions ?? 'auto';
+  return {
+    path,
+    target: withoutControls(entry.target),
+    star: {
+      massSolar: entry.star?.mass ?? null,
+      radiusSolar: entry.star?.radius ?? null,
+      effectiveTemperatureK: entry.star?.temperature ?? null,
+    },
+    tables: (entry.tables ?? []).map((table) => toRequest(table, dirname(path))),
+    companions: Array.isArray(companions) ? toCompanions(companions, circular) : companions,
+    maximumCompanions: entry.search?.['at-most'] ?? DEFAULT_MOST_COMPANIONS,
+    drift: entry.drift ?? 'auto',
+    circular,
+    instruments: toInstruments(entry.instruments ?? {}),
+    periodRangeDays: {
+      low: entry.search?.['shortest-period'] ?? null,
+      high: entry.search?.['longest-period'] ?? null,
+    },
+    mock: entry.mock === undefined ? null : mockPlan(entry.mock),
+  };
+}
+
+function toRequest(table: TableEntry, folder: string): TableRequest {
+  const { error, ...others } = table.columns ?? {};
+  const columns: Record<string, string> = {};
+  for (const [meaning, column] of Object.entries({ ...others, 'velocity-error': error })) {
+    if (column !== undefined) columns[meaning] = String(column);
+  }
+  return {
+    path: isAbsolute(table.file) ? table.file : join(folder, table.file),
+    instrument: table.instrument ?? null,
+    timeScale: table.time?.scale ?? null,
+    timeOffsetDays: table.time?.offsetDays ?? null,
+    velocityUnit: table.unit ?? null,
+    columns,
+  };
+}
+
+/** Letters that are not given go to the companions in order, from b on. */
+function toCompanions(list: readonly CompanionEntry[], circular: boolean | 'auto'): CompanionChoice[] {
+  const given = new Set(list.map((entry) => entry.letter));
+  const free = 'bcdefghijklmnopqrstuvwxyz'.split('').filter((letter) => !given.has(letter));
+  return list.map((entry) => {
+    const elements: Partial<Record<ElementName, ElementChoice>> = {};
+    const set = (name: ElementName, choice: ElementChoice | undefined): void => {
+      if (choice !== undefined) elements[name] = choice;
+    };
+    set('period', entry.period);
+    set('eccentricity', entry.eccentricity);
+    set('argumentOfPeriastron', entry['argument-of-periastron']);
+    set('timeOfPeriastron', entry['time-of-periastron']);
+    set('timeOfInferiorConjunction', entry['time-of-inferior-conjunction']);
+    set('semiAmplitude', entry['semi-amplitude']);
+    // An eccentricity that is stated decides the question of circular or not, whatever holds for the others.
+    const stated = entry.eccentricity === undefined ? circular : isZero(entry.eccentricity);
+    return {
+      letter: entry.letter ?? free.shift()!,
+      circular: entry.circular ?? stated,
+      elements,
+      inclinationDeg: entry.inclination ?? null,
+    };
+  });
+}
+
+/** Without a prototype, so that an instrument called `constructor` finds nothing that was not written. */
+function toInstruments(
+  entries: NonNullable<CaseEntry['instruments']>,
+): Readonly<Record<string, InstrumentChoice>> {
+  const choices = Object.create(null) as Record<string, InstrumentChoice>;
+  for (const [name, entry] of Object.entries(entries)) {
+    choices[name] = { zeroPointMps: entry['zero-point'] ?? null, jitterMps: entry.jitter ?? null };
+  }
+  return choices;
+}
+
+/**
+ * Holds the instruments that a case makes choices for against those that the tables have.
+ *
+ * @throws InputDataError naming each unknown instrument, with "did you mean"
+ */
+export function checkInstrumentChoices(theCase: Case, velocities: VelocitySet): void {
+  const issues = new IssueList(theCase.path ?? 'case');
+  for (const name of Object.keys(theCase.instruments)) {
+    if (velocities.instruments.includes(name)) continue;
+    issues.add({
+      code: 'unknown-instrument',
+      field: `instruments.${name}`,
+      message: `no table has an instrument ${quoted(name)}`,
+      hint: didYouMean(name, velocities.instruments),
+    });
+  }
+  issues.throwIfAny();
+}
+
+/** Options of the command line, as text; what is absent keeps its default. */
+export interface BareCaseOptions {
+  readonly starMass?: string | undefined;
+  readonly starRadius?: string | undefined;
+  readonly starTemperature?: string | undefined;
+  readonly target?: string | undefined;
+}
+
+/**
+ * A case for tables without a case file: everything is left to the data. The target is called after the first table unless named.
+ *
+ * @throws UsageError when an option is no quantity of its kind
+ */
+export function caseFromTables(paths: readonly string[], options: BareCaseOptions = {}): Case {
+  return {
+    path: null,
+    target: options.target ?? fileStem(paths[0] ?? ''),
+    star: {
+      massSolar: positive(options.starMass, 'star mass'),
+      radiusSolar: positive(options.starRadius, 'star radius'),
+      effectiveTemperatureK: positive(options.starTemperature, 'temperature'),
+    },
+    tables: paths.map(requestFor),
+    companions: 'auto',
+    maximumCompanions: DEFAULT_MOST_COMPANIONS,
+    drift: 'auto',
+    circular: 'auto',
+    instruments: Object.create(null) as Record<string, InstrumentChoice>,
+    periodRangeDays: { low: null, high: null },
+    mock: null,
+  };
+}
+
+function positive(written: string | undefined, kind: QuantityKind): Measured | null {
+  if (written === undefined) return null;
+  const measured = parseMeasured(written, kind);
+  if (measured.value > 0) return measured;
+  throw new UsageError(`found ${quoted(written)}; a ${kind} must be > 0`);
+}

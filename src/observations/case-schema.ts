@@ -1,0 +1,180 @@
+/**
+ * What a case may say: every key, its meaning and its limits, in one place. A new section (light curves, mid-times, a site, plans)
+ * is one schema here, one line in `caseSchema`, and its mapping in `case-reader.ts`.
+ */
+import * as z from 'zod';
+import {
+  ANY,
+  autoOrBoolean,
+  between,
+  byShape,
+  choice,
+  complain,
+  ECCENTRICITY,
+  mapping,
+  measured,
+  NOT_NEGATIVE,
+  POSITIVE,
+  single,
+  text,
+  wholeNumber,
+  word,
+} from './case-values.js';
+import { mockSchema } from './case-mock-schema.js';
+import { quoted } from './text.js';
+import { readTimeLabel, type TimeLabel } from './time-label.js';
+import type { ElementChoice } from './types.js';
+
+export const MOST_COMPANIONS = 20;
+export const DEFAULT_MOST_COMPANIONS = 5;
+
+const star = mapping({
+  mass: measured('star mass', POSITIVE).optional(),
+  radius: measured('star radius', POSITIVE).optional(),
+  temperature: measured('temperature', POSITIVE).optional(),
+});
+
+/** A label of the header, or a position from 1. */
+const columnName = z.union([z.string().min(1).max(200), z.int().min(1).max(500)], {
+  error: 'a label of the header, or a position from 1, is expected',
+});
+
+const timeDeclaration = z
+  .string({ error: 'a time scale is expected, e.g. BJD_TDB or BJD_TDB - 2450000' })
+  .transform((written, context): TimeLabel => {
+    const label = readTimeLabel(written);
+    if (label !== null && label.scale !== 'unknown') return label;
+    complain(
+      context,
+      `found ${quoted(written)}; a time scale is expected`,
+      'one of BJD_TDB, BJD_UTC, BJD, HJD_UTC, HJD_TT, HJD, JD_UTC, JD_TT, JD, MJD, with an offset if need be: BJD_TDB - 2450000',
+    );
+    return z.NEVER;
+  });
+
+const tableMapping = mapping({
+  file: text,
+  instrument: text.optional(),
+  unit: word(['m/s', 'km/s']).optional(),
+  time: timeDeclaration.optional(),
+  columns: mapping({
+    time: columnName.optional(),
+    velocity: columnName.optional(),
+    error: columnName.optional(),
+    instrument: columnName.optional(),
+    quality: columnName.optional(),
+  }).optional(),
+});
+export type TableEntry = z.output<typeof tableMapping>;
+
+/** A file name alone, or a mapping with what is declared of it. */
+const table = byShape<TableEntry>((value) =>
+  typeof value === 'object' && value !== null ? tableMapping : text.transform((file) => ({ file })),
+);
+
+const companionMapping = mapping({
+  letter: z
+    .string()
+    .regex(/^[b-z]$/, { error: 'a letter from b to z is expected' })
+    .optional(),
+  period: choice('period', POSITIVE).optional(),
+  eccentricity: choice('number', ECCENTRICITY).optional(),
+  'argument-of-periastron': choice('angle', between(-360, 360)).optional(),
+  'time-of-periastron': choice('date', POSITIVE).optional(),
+  'time-of-inferior-conjunction': choice('date', POSITIVE).optional(),
+  'semi-amplitude': choice('velocity', NOT_NEGATIVE).optional(),
+  inclination: measured('angle', {
+    allows: (value) => value > 0 && value < 180,
+    words: 'must lie between 0 and 180 deg, both excluded',
+  }).optional(),
+  circular: autoOrBoolean.optional(),
+}).superRefine((companion, context) => {
+  const { eccentricity, circular } = companion;
+  if (
+    companion['time-of-periastron'] !== undefined &&
+    companion['time-of-inferior-conjunction'] !== undefined
+  ) {
+    complain(
+      context,
+      'time-of-periastron and time-of-inferior-conjunction both set the phase of the orbit',
+      'keep one of them',
+      ['time-of-inferior-conjunction'],
+    );
+  }
+  if (circular === true && eccentricity !== undefined && !isZero(eccentricity)) {
+    complain(context, 'a circular orbit has eccentricity 0', 'leave out eccentricity or circular', [
+      'eccentricity',
+    ]);
+  }
+  if (circular === false && eccentricity !== undefined && isZero(eccentricity)) {
+    complain(context, 'eccentricity is fixed at 0 and yet circular is false', 'leave out one of them', [
+      'circular',
+    ]);
+  }
+});
+export type CompanionEntry = z.output<typeof companionMapping>;
+
+export function isZero(found: ElementChoice): boolean {
+  return found.kind === 'fixed' && found.value === 0;
+}
+
+type Companions = 'auto' | number | CompanionEntry[];
+
+const companionList = z
+  .array(companionMapping)
+  .min(1, { error: 'the list of companions is empty; write 0 for none' })
+  .max(MOST_COMPANIONS, { error: `at most ${MOST_COMPANIONS} companions are allowed` })
+  .superRefine((list, context) => {
+    const letters = list.map((entry) => entry.letter).filter((letter) => letter !== undefined);
+    for (const [index, entry] of list.entries()) {
+      if (entry.letter !== undefined && letters.indexOf(entry.letter) !== letters.lastIndexOf(entry.letter)) {
+        complain(context, `the letter ${entry.letter} is given to two companions`, '', [index, 'letter']);
+      }
+    }
+  });
+
+const companions = byShape<Companions>((value) => {
+  if (Array.isArray(value)) return companionList;
+  if (typeof value === 'number') return wholeNumber(0, MOST_COMPANIONS);
+  return z.unknown().transform((written, context): 'auto' => {
+    if (written === 'auto') return 'auto';
+    complain(
+      context,
+      'auto, a number of companions, or a list of them is expected',
+      'each entry of a list begins with "- "',
+    );
+    return z.NEVER;
+  });
+});
+
+const instrument = mapping({
+  'zero-point': choice('velocity', ANY).optional(),
+  jitter: choice('velocity', NOT_NEGATIVE).optional(),
+});
+
+const search = mapping({
+  'shortest-period': single('period', POSITIVE).optional(),
+  'longest-period': single('period', POSITIVE).optional(),
+  'at-most': wholeNumber(0, MOST_COMPANIONS).optional(),
+}).superRefine((range, context) => {
+  const [low, high] = [range['shortest-period'], range['longest-period']];
+  if (low !== undefined && high !== undefined && low >= high)
+    complain(context, 'shortest-period must be below longest-period', '', ['longest-period']);
+});
+
+export const caseSchema = mapping({
+  target: text,
+  star: star.optional(),
+  tables: z.array(table).max(500, { error: 'at most 500 tables are allowed' }).optional(),
+  companions: companions.optional(),
+  drift: word(['auto', 'none', 'linear', 'quadratic']).optional(),
+  circular: autoOrBoolean.optional(),
+  instruments: z.record(z.string().min(1).max(200), instrument).optional(),
+  search: search.optional(),
+  mock: mockSchema.optional(),
+}).superRefine((theCase, context) => {
+  if ((theCase.tables ?? []).length === 0 && theCase.mock === undefined) {
+    complain(context, 'the case names no table', 'add tables: [ north.csv ]');
+  }
+});
+export type CaseEntry = z.output<typeof caseSchema>;

@@ -1,0 +1,156 @@
+/** What the user must know before believing a solution. */
+import type { Case, VelocitySet } from '../observations/types.js';
+import type { Explorer, PlannedFit } from './explorer.js';
+import type { CompanionRecord, InstrumentRecord } from './types.js';
+
+export interface Warning {
+  readonly code: string;
+  readonly message: string;
+}
+
+interface WarningInput {
+  readonly explorer: Explorer;
+  readonly best: PlannedFit;
+  readonly theCase: Case;
+  readonly velocities: VelocitySet;
+  readonly companions: readonly CompanionRecord[];
+  readonly instruments: readonly InstrumentRecord[];
+}
+
+type Check = (given: WarningInput) => Warning[];
+
+const days = (period: number): string => `${period < 10 ? period.toFixed(3) : period.toFixed(1)} d`;
+
+const longPeriods: Check = ({ explorer, companions }) =>
+  companions.flatMap(({ letter, elements }) => {
+    const period = elements.period.value!;
+    const { spanDays } = explorer.range;
+    if (period > spanDays) {
+      return [{ code: 'period-longer-than-data', message: `companion ${letter}: the period (${days(period)}) is longer than the observations (${days(spanDays)}); period, eccentricity and mass are not independent of each other` }];
+    }
+    return period > 0.7 * spanDays
+      ? [{ code: 'hardly-one-revolution', message: `companion ${letter}: the observations (${days(spanDays)}) cover hardly more than one revolution (${days(period)})` }]
+      : [];
+  }); // prettier-ignore
+
+const fewData: Check = ({ best, velocities }) => {
+  const left = velocities.count - best.fit.problem.freeCount;
+  return left < 5
+    ? [{ code: 'few-data', message: `${velocities.count} velocities for ${best.fit.problem.freeCount} free parameters: the goodness of fit says little` }]
+    : [];
+}; // prettier-ignore
+
+const lonelyInstruments: Check = ({ instruments }) =>
+  instruments
+    .filter((instrument) => instrument.count === 1)
+    .map((instrument) => ({
+      code: 'one-velocity-instrument',
+      message: `instrument ${instrument.name} has one velocity: its zero point absorbs it, and it does not constrain the orbit`,
+    }));
+
+const steepOrbits: Check = ({ companions }) =>
+  companions
+    .filter(({ elements }) => elements.eccentricity.value! > 0.95)
+    .map(({ letter }) => ({
+      code: 'eccentricity-at-limit',
+      message: `companion ${letter}: the eccentricity was driven close to 1; look whether single velocities carry it`,
+    }));
+
+const undetermined: Check = ({ companions }) =>
+  companions
+    .filter(({ elements }) => elements.period.value !== null && elements.period.fixed !== true && elements.period.sigma === null)
+    .map(({ letter }) => ({
+      code: 'uncertainty-unknown',
+      message: `companion ${letter}: the curvature at the solution does not determine every element, so that no uncertainties are given`,
+    }));
+
+/** Two signals closer than the resolution of the data share one peak. */
+const sharedSignals: Check = ({ explorer, companions }) =>
+  companions.flatMap((first, i) =>
+    companions.slice(i + 1).flatMap((second) => {
+      const apart = Math.abs(1 / first.elements.period.value! - 1 / second.elements.period.value!);
+      return apart * explorer.range.spanDays < 1
+        ? [{ code: 'one-signal-claimed-twice', message: `companions ${first.letter} and ${second.letter} are closer in frequency than the data resolve: they may describe one signal` }]
+        : [];
+    }),
+  ); // prettier-ignore
+
+const closeRivals: Check = ({ companions }) =>
+  companions.flatMap(({ letter, rivals }) => {
+    const top = rivals[0];
+    return top !== undefined && top.deltaLogLikelihood > -5
+      ? [{ code: 'rival-period', message: `companion ${letter}: a period of ${days(top.period)} (${top.kind}) fits nearly as well (Δ ln L ${top.deltaLogLikelihood.toFixed(1)})` }]
+      : [];
+  }); // prettier-ignore
+
+const weakCompanions: Check = ({ companions }) =>
+  companions
+    .filter(({ evidence }) => evidence.falseAlarmProbability > 1e-3 || evidence.deltaBic < 10)
+    .map(({ letter, evidence }) => ({
+      code: 'companion-not-supported',
+      message: `companion ${letter} was asked for but does not clear the thresholds (false-alarm probability ${evidence.falseAlarmProbability.toPrecision(2)}, ΔBIC ${evidence.deltaBic.toFixed(1)})`,
+    }));
+
+/** Periods that the rotation of the Earth or its orbit could have made. */
+const terrestrialPeriods: Check = ({ explorer, companions }) =>
+  companions.flatMap(({ letter, elements }) => {
+    const frequency = 1 / elements.period.value!;
+    const near = [
+      { name: 'one day', value: 1 },
+      { name: 'one year', value: 1 / 365.2422 },
+    ].find(({ value }) => Math.abs(frequency - value) < Math.max(1.5 / explorer.range.spanDays, 0.003 * value));
+    return near === undefined
+      ? []
+      : [{ code: 'terrestrial-period', message: `companion ${letter}: the period is close to ${near.name}; the phases that could be observed are few, and systematic effects of that period exist` }];
+  }); // prettier-ignore
+
+const largestPhaseGap: Check = ({ velocities, companions }) =>
+  companions.flatMap(({ letter, elements }) => {
+    const phases = [...velocities.timesBjdTdb].map((t) => (t - elements.timeOfPeriastron.value!) / elements.period.value!);
+    const sorted = phases.map((phase) => phase - Math.floor(phase)).sort((a, b) => a - b);
+    const gaps = sorted.map((phase, i) => (sorted[i + 1] ?? sorted[0]! + 1) - phase);
+    const widest = Math.max(...gaps);
+    return widest > 0.35
+      ? [{ code: 'phase-gap', message: `companion ${letter}: ${(100 * widest).toFixed(0)} % of the orbit was never observed` }]
+      : [];
+  }); // prettier-ignore
+
+const largeJitters: Check = ({ velocities, instruments }) =>
+  instruments.flatMap((instrument, index) => {
+    const sigmas = velocities.sigmasMps.filter((_, i) => velocities.instrumentOf[i] === index).sort();
+    const typical = sigmas[Math.floor(sigmas.length / 2)] ?? 0;
+    return instrument.count > 3 && instrument.jitter.value! > 5 * typical
+      ? [{ code: 'large-jitter', message: `instrument ${instrument.name}: the jitter (${instrument.jitter.value!.toPrecision(2)} m/s) is many times the stated errors (${typical.toPrecision(2)} m/s): something that is not in the model, or errors too small` }]
+      : [];
+  }); // prettier-ignore
+
+const cutGrid: Check = ({ explorer }) =>
+  explorer.range.cut
+    ? [{ code: 'search-cut', message: `the observations span ${explorer.range.spanDays.toFixed(0)} d, too long to search below ${days(explorer.range.shortestPeriodDays)} at full resolution: state a period range, and check the dates` }]
+    : []; // prettier-ignore
+
+const tableNotices: Check = ({ velocities }) =>
+  velocities.notices.map((notice) => ({
+    code: notice.code,
+    message: `${notice.path}: ${notice.message}`,
+  }));
+
+const CHECKS: readonly Check[] = [
+  tableNotices,
+  fewData,
+  cutGrid,
+  lonelyInstruments,
+  longPeriods,
+  steepOrbits,
+  undetermined,
+  sharedSignals,
+  weakCompanions,
+  closeRivals,
+  terrestrialPeriods,
+  largestPhaseGap,
+  largeJitters,
+];
+
+export function warningsOf(given: WarningInput): Warning[] {
+  return CHECKS.flatMap((check) => check(given));
+}
