@@ -30,7 +30,10 @@ export function aliasesOf(frequencyPerDay: number, resolutionPerDay: number): Al
   const all: Alias[] = [];
   for (const sampling of SAMPLINGS) {
     for (const sign of [-1, 1]) {
-      all.push({ frequencyPerDay: Math.abs(frequencyPerDay + sign * sampling.frequencyPerDay), kind: sampling.kind });
+      all.push({
+        frequencyPerDay: Math.abs(frequencyPerDay + sign * sampling.frequencyPerDay),
+        kind: sampling.kind,
+      });
     }
   }
   all.push({ frequencyPerDay: 2 * frequencyPerDay, kind: 'half period' });
@@ -39,14 +42,23 @@ export function aliasesOf(frequencyPerDay: number, resolutionPerDay: number): Al
   for (const alias of all) {
     if (alias.frequencyPerDay < 0.5 * resolutionPerDay) continue;
     if (Math.abs(alias.frequencyPerDay - frequencyPerDay) < 0.75 * resolutionPerDay) continue;
-    if (distinct.some((other) => Math.abs(other.frequencyPerDay - alias.frequencyPerDay) < 0.5 * resolutionPerDay)) continue;
+    if (
+      distinct.some(
+        (other) => Math.abs(other.frequencyPerDay - alias.frequencyPerDay) < 0.5 * resolutionPerDay,
+      )
+    )
+      continue;
     distinct.push(alias);
   }
   return distinct;
 }
 
 /** What a frequency is, seen from another: the kind of alias, or null. */
-export function aliasKind(frequencyPerDay: number, ofFrequencyPerDay: number, resolutionPerDay: number): string | null {
+export function aliasKind(
+  frequencyPerDay: number,
+  ofFrequencyPerDay: number,
+  resolutionPerDay: number,
+): string | null {
   const match = aliasesOf(ofFrequencyPerDay, resolutionPerDay).find(
     (alias) => Math.abs(alias.frequencyPerDay - frequencyPerDay) < 0.6 * resolutionPerDay,
   );

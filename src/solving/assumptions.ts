@@ -16,7 +16,10 @@ export function assumptionsOf(theCase: Case, best: PlannedFit, source: Curvature
     'Masses are exact for any mass ratio; constants are the IAU 2015 nominal values.',
   ];
   if (theCase.star.massSolar !== null && theCase.star.massSolar.sigma === 0)
-    sentences.push('The mass of the star was given without uncertainty, so that masses and axes carry none from it.');
-  if (best.plan.drift > 0) sentences.push('A drift is taken as a polynomial in time over the observations only.');
+    sentences.push(
+      'The mass of the star was given without uncertainty, so that masses and axes carry none from it.',
+    );
+  if (best.plan.drift > 0)
+    sentences.push('A drift is taken as a polynomial in time over the observations only.');
   return sentences;
 }

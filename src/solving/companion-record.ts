@@ -57,11 +57,17 @@ function derivedQuantities(
     inclinationDeg: inclination === null ? null : inclination.value + sigma * inclination.sigma,
   });
   const star = withInclination(sampled.star, 0);
-  const best = deriveAll({ elements: sampled.values.companions[index]!, star, lastObservationDays }, DERIVED_KEYS);
+  const best = deriveAll(
+    { elements: sampled.values.companions[index]!, star, lastObservationDays },
+    DERIVED_KEYS,
+  );
   const columns = DERIVED_KEYS.map(() => new Float64Array(sampled.draws.length));
   sampled.draws.forEach((draw, d) => {
     const drawnStar = withInclination(sampled.stars[d]!, inclination === null ? 0 : random.normal());
-    const values = deriveAll({ elements: draw.companions[index]!, star: drawnStar, lastObservationDays }, DERIVED_KEYS);
+    const values = deriveAll(
+      { elements: draw.companions[index]!, star: drawnStar, lastObservationDays },
+      DERIVED_KEYS,
+    );
     values.forEach((value, k) => (columns[k]![d] = value));
   });
   const period = sampled.values.companions[index]!.period;
@@ -70,17 +76,29 @@ function derivedQuantities(
     if (lack !== null) return [key, unknownQuantity(derivedUnit(key), lack)];
     const shift = isDerivedTime(key) ? explorer.builder.epochBjdTdb : 0;
     // Dates of one and the same passage: a draw that lands on the passage before or after is brought back.
-    const column = isDerivedTime(key) ? columns[k]!.map((t) => t - period * Math.round((t - best[k]!) / period)) : columns[k]!;
-    return [key, centralInterval(shift + best[k]!, column.map((value) => shift + value), derivedUnit(key))];
+    const column = isDerivedTime(key)
+      ? columns[k]!.map((t) => t - period * Math.round((t - best[k]!) / period))
+      : columns[k]!;
+    return [
+      key,
+      centralInterval(
+        shift + best[k]!,
+        column.map((value) => shift + value),
+        derivedUnit(key),
+      ),
+    ];
   });
   return Object.fromEntries(entries) as Record<DerivedKey, Quantity>;
 }
 
 /** Neighbours in period, side by side. */
-export function neighbourRecords(sampled: Sampled, companions: readonly CompanionRecord[]): NeighbourRecord[] {
-  const order = companions.map((_, c) => c).sort(
-    (a, b) => companions[a]!.elements.period.value! - companions[b]!.elements.period.value!,
-  );
+export function neighbourRecords(
+  sampled: Sampled,
+  companions: readonly CompanionRecord[],
+): NeighbourRecord[] {
+  const order = companions
+    .map((_, c) => c)
+    .sort((a, b) => companions[a]!.elements.period.value! - companions[b]!.elements.period.value!);
   return order.slice(1).map((outer, position) => {
     const inner = order[position]!;
     const first = companions[inner]!;

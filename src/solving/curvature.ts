@@ -70,12 +70,17 @@ export function expectedInformation(problem: VelocityProblem, point: ModelPoint)
     // At s = 0 the information on s vanishes; the width at which ln L = -(n/4)(s^2/v)^2 has dropped by 1/2 stands in.
     const at = p + index;
     const prior = problem.structure.jitters[instrument]!.prior;
-    information[at * size + at] = Math.max(sum, weight / Math.sqrt(2 * count)) + (prior === null ? 0 : prior.sigma ** -2);
+    information[at * size + at] =
+      Math.max(sum, weight / Math.sqrt(2 * count)) + (prior === null ? 0 : prior.sigma ** -2);
   });
   return information;
 }
 
-function observedInformation(problem: VelocityProblem, point: ModelPoint, expected: Float64Array): Float64Array | null {
+function observedInformation(
+  problem: VelocityProblem,
+  point: ModelPoint,
+  expected: Float64Array,
+): Float64Array | null {
   const p = problem.parameterCount;
   const size = problem.freeCount;
   const freeJitters = problem.freeJitters;

@@ -101,7 +101,11 @@ const RECIPES: Readonly<Record<DerivedKey, Recipe>> = {
     compute: ({ elements: e }) => starOrbitSemiMajorAxisAu(e.semiAmplitude, e.period, e.eccentricity),
   },
   massFunction: { unit: 'M_sun', needs: [], compute: (g) => g.massFunction },
-  minimumMass: { unit: JUPITER_MASS, needs: ['starMass'], compute: (g) => g.minimumMassSolar! * SOLAR_MASS_IN_JUPITER },
+  minimumMass: {
+    unit: JUPITER_MASS,
+    needs: ['starMass'],
+    compute: (g) => g.minimumMassSolar! * SOLAR_MASS_IN_JUPITER,
+  },
   mass: {
     unit: JUPITER_MASS,
     needs: ['starMass', 'inclination'],
@@ -113,10 +117,26 @@ const RECIPES: Readonly<Record<DerivedKey, Recipe>> = {
         sinInclination: Math.sin((g.star.inclinationDeg! * TWO_PI) / 360),
       }),
   },
-  periastronDistance: { unit: 'au', needs: ['starMass'], compute: (g) => distanceAndSpeed(g, periastronDistanceAu)[0] },
-  apastronDistance: { unit: 'au', needs: ['starMass'], compute: (g) => distanceAndSpeed(g, apastronDistanceAu)[0] },
-  periastronSpeed: { unit: 'km/s', needs: ['starMass'], compute: (g) => distanceAndSpeed(g, periastronDistanceAu)[1] },
-  apastronSpeed: { unit: 'km/s', needs: ['starMass'], compute: (g) => distanceAndSpeed(g, apastronDistanceAu)[1] },
+  periastronDistance: {
+    unit: 'au',
+    needs: ['starMass'],
+    compute: (g) => distanceAndSpeed(g, periastronDistanceAu)[0],
+  },
+  apastronDistance: {
+    unit: 'au',
+    needs: ['starMass'],
+    compute: (g) => distanceAndSpeed(g, apastronDistanceAu)[0],
+  },
+  periastronSpeed: {
+    unit: 'km/s',
+    needs: ['starMass'],
+    compute: (g) => distanceAndSpeed(g, periastronDistanceAu)[1],
+  },
+  apastronSpeed: {
+    unit: 'km/s',
+    needs: ['starMass'],
+    compute: (g) => distanceAndSpeed(g, apastronDistanceAu)[1],
+  },
   nextInferiorConjunction: {
     unit: 'd',
     needs: [],
@@ -129,7 +149,11 @@ const RECIPES: Readonly<Record<DerivedKey, Recipe>> = {
     isTime: true,
     compute: (g) => nextAfter(g.elements.timeOfPeriastron, g.elements.period, g.lastObservationDays),
   },
-  transitProbability: { unit: '', needs: ['starMass', 'starRadius'], compute: (g) => transitProbability(geometry(g)) },
+  transitProbability: {
+    unit: '',
+    needs: ['starMass', 'starRadius'],
+    compute: (g) => transitProbability(geometry(g)),
+  },
   transitDuration: {
     unit: 'h',
     needs: ['starMass', 'starRadius'],
@@ -202,9 +226,15 @@ export function deriveAll(input: DerivedInput, keys: readonly DerivedKey[]): num
   const minimumMassSolar =
     star.massSolar === null
       ? null
-      : companionMassSolar({ massFunctionSolar: massFunction, starMassSolar: star.massSolar, sinInclination: 1 });
+      : companionMassSolar({
+          massFunctionSolar: massFunction,
+          starMassSolar: star.massSolar,
+          sinInclination: 1,
+        });
   const semiMajorAxisAu =
-    minimumMassSolar === null ? null : relativeSemiMajorAxisAu(star.massSolar! + minimumMassSolar, elements.period);
+    minimumMassSolar === null
+      ? null
+      : relativeSemiMajorAxisAu(star.massSolar! + minimumMassSolar, elements.period);
   const given: Intermediate = { ...input, massFunction, minimumMassSolar, semiMajorAxisAu };
   return keys.map((key) => {
     if (derivedLack(key, star) !== null) return NaN;

@@ -43,13 +43,17 @@ function elementValues(
   reference: { readonly periastron: number; readonly conjunction: number },
 ): ElementValues {
   const { periodDays, timePeriastronDays } = companion;
-  const near = (time: number, wanted: number): number => time + periodDays * Math.round((wanted - time) / periodDays);
+  const near = (time: number, wanted: number): number =>
+    time + periodDays * Math.round((wanted - time) / periodDays);
   return {
     period: periodDays,
     eccentricity: companion.eccentricity,
     argumentOfPeriastron: (((companion.argPeriastronStarRad % TWO_PI) + TWO_PI) % TWO_PI) * DEGREES,
     timeOfPeriastron: near(timePeriastronDays, reference.periastron),
-    timeOfInferiorConjunction: near(timePeriastronDays + conjunctionDelayDays(companion), reference.conjunction),
+    timeOfInferiorConjunction: near(
+      timePeriastronDays + conjunctionDelayDays(companion),
+      reference.conjunction,
+    ),
     semiAmplitude: companion.semiAmplitudeMps,
   };
 }

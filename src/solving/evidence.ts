@@ -3,8 +3,8 @@ import { RandomStream } from '../numerics/random.js';
 import { curvatureAt, gaussianDraws } from './curvature.js';
 import { reportedValues } from './elements-report.js';
 import type { Explorer, PlannedFit } from './explorer.js';
-import { powerOfGain, shapeFalseAlarm, sinusoidFalseAlarm } from './false-alarm.js';
-import { SINUSOID_SHARE, falseAlarmSettingOf } from './find-companions.js';
+import { powerOfGain } from './false-alarm.js';
+import { evidenceFromFits } from './find-companions.js';
 import { permutationFalseAlarm } from './permutations.js';
 import { centralInterval } from './quantities.js';
 import type { Evidence } from './types.js';
@@ -16,29 +16,41 @@ export interface EvidenceOptions {
 }
 
 /** Evidence for companion `index` of `best`. */
-export function evidenceOf(explorer: Explorer, best: PlannedFit, index: number, options: EvidenceOptions): Evidence {
+export function evidenceOf(
+  explorer: Explorer,
+  best: PlannedFit,
+  index: number,
+  options: EvidenceOptions,
+): Evidence {
   const n = explorer.builder.data.timesDays.length;
   const base = explorer.without(best, index);
   const variants = shapesOf(explorer, best, index);
-  const gainOf = (planned: PlannedFit | null): number =>
-    planned === null ? 0 : Math.max(0, planned.fit.logLikelihood - base.fit.logLikelihood);
-  const setting = falseAlarmSettingOf(explorer, base);
-  const power = powerOfGain(gainOf(variants.circular), n);
-  const analytic = Math.min(
-    1,
-    sinusoidFalseAlarm(power, setting) / SINUSOID_SHARE,
-    shapeFalseAlarm(gainOf(variants.eccentric), setting) / (1 - SINUSOID_SHARE),
+  const { deltaLogLikelihood, deltaBic, falseAlarmProbability } = evidenceFromFits(
+    explorer,
+    base,
+    best,
+    variants,
   );
+  const circularGain =
+    variants.circular === null ? 0 : variants.circular.fit.logLikelihood - base.fit.logLikelihood;
   const permuted =
-    options.permutations > 0 ? permutationFalseAlarm(explorer, base, power, options.permutations, options.seed) : null;
+    options.permutations > 0
+      ? permutationFalseAlarm(
+          explorer,
+          base,
+          powerOfGain(circularGain, n),
+          options.permutations,
+          options.seed,
+        )
+      : null;
   return {
-    deltaLogLikelihood: best.fit.logLikelihood - base.fit.logLikelihood,
-    deltaBic: base.fit.bic - best.fit.bic,
-    falseAlarmProbability: permuted === null ? analytic : permuted.probability,
+    deltaLogLikelihood,
+    deltaBic,
+    falseAlarmProbability: permuted === null ? falseAlarmProbability : permuted.probability,
     falseAlarmMethod:
       permuted === null
         ? 'analytic bound of Baluev 2008 with the noise level refitted, shared between sinusoids and eccentric shapes'
-        : `${permuted.count} permutations of the residuals within instruments, ${permuted.exceeding} of which reached the power of the sinusoid (analytic bound ${analytic.toExponential(1)})`,
+        : `${permuted.count} permutations of the residuals within instruments, ${permuted.exceeding} of which reached the power of the sinusoid (analytic bound ${falseAlarmProbability.toExponential(1)})`,
     eccentricity: eccentricityEvidence(explorer, best, index, variants, options.seed),
   };
 }
@@ -52,7 +64,9 @@ interface Shapes {
 function shapesOf(explorer: Explorer, best: PlannedFit, index: number): Shapes {
   const companion = best.plan.companions[index]!;
   const isFree = companion.choice?.elements.eccentricity === undefined;
-  const companions = best.plan.companions.map((other, c) => (c === index ? { ...other, circular: !other.circular } : other));
+  const companions = best.plan.companions.map((other, c) =>
+    c === index ? { ...other, circular: !other.circular } : other,
+  );
   const other = isFree ? explorer.fit({ ...best.plan, companions }, explorer.portable(best)) : null;
   const usable = other === null || other.fit.status === 'failed' || !explorer.isInRange(other) ? null : other;
   return companion.circular ? { circular: best, eccentric: usable } : { circular: usable, eccentric: best };
@@ -93,10 +107,16 @@ function eccentricElements(
   const values = reportedValues(problem, point, references).companions[index]!;
   const { covariance } = curvatureAt(problem, point);
   const draws =
-    covariance === null ? [] : gaussianDraws(problem, point, covariance, 1000, RandomStream.fromSeed(seed, 100 + index));
+    covariance === null
+      ? []
+      : gaussianDraws(problem, point, covariance, 1000, RandomStream.fromSeed(seed, 100 + index));
   const drawn = draws.map((draw) => reportedValues(problem, draw, references).companions[index]!);
   return {
-    eccentricity: centralInterval(values.eccentricity, Float64Array.from(drawn, (d) => d.eccentricity), ''),
+    eccentricity: centralInterval(
+      values.eccentricity,
+      Float64Array.from(drawn, (d) => d.eccentricity),
+      '',
+    ),
     argumentOfPeriastron: centralInterval(
       values.argumentOfPeriastron,
       Float64Array.from(drawn, (d) => d.argumentOfPeriastron),

@@ -30,6 +30,7 @@ export class Explorer {
   readonly theCase: Case;
   readonly range: SearchRange;
   readonly drifts: readonly DriftDegree[];
+  readonly #instruments: readonly string[];
   readonly #periodograms = new Map<string, Periodogram>();
 
   constructor(
@@ -39,6 +40,7 @@ export class Explorer {
     epochBjdTdb: number,
     spanDays: number,
   ) {
+    this.#instruments = instruments;
     this.builder = new ModelBuilder(data, instruments, theCase, epochBjdTdb);
     this.theCase = theCase;
     this.range = searchRange(spanDays, theCase.periodRangeDays);
@@ -48,6 +50,11 @@ export class Explorer {
         ? [0, 1, 2]
         : [{ none: 0, linear: 1, quadratic: 2 }[theCase.drift] as DriftDegree];
     this.drifts = theCase.drift === 'auto' ? all.filter((degree) => degree + 2 < free) : all;
+  }
+
+  /** The same case and search range for other data of the same instruments, e.g. nightly means. */
+  withData(data: VelocityData): Explorer {
+    return new Explorer(data, this.#instruments, this.theCase, this.builder.epochBjdTdb, this.range.spanDays);
   }
 
   fit(plan: ModelPlan, start: PortablePoint, effort: FitEffort = THOROUGH): PlannedFit {

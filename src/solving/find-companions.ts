@@ -11,6 +11,7 @@ import {
   weightedVariance,
   type FalseAlarmSetting,
 } from './false-alarm.js';
+import { nightlySupport } from './nightly.js';
 import { searchRange, type SearchRange } from './search-range.js';
 import { backgroundOf, type StageSearch } from './search-stage.js';
 
@@ -18,8 +19,11 @@ import { backgroundOf, type StageSearch } from './search-stage.js';
 export const ACCEPTED = { falseAlarmProbability: 1e-3, deltaBic: 10 } as const;
 export const CANDIDATE = { falseAlarmProbability: 1e-2, deltaBic: 5 } as const;
 
+/** Finalists of a stage that are weighed before the search ends. */
+const QUESTIONED = 4;
+
 /** Share of the false-alarm budget given to sinusoids; the rest goes to eccentric shapes. */
-export const SINUSOID_SHARE = 0.8;
+const SINUSOID_SHARE = 0.8;
 
 export interface Addition {
   readonly planned: PlannedFit;
@@ -36,7 +40,11 @@ export interface FoundStage {
   /** Other additions that were fitted thoroughly, best BIC first. */
   readonly alternatives: readonly PlannedFit[];
   /** The eccentric addition that gains most. */
-  readonly bestShape: { readonly periodDays: number; readonly eccentricity: number; readonly gain: number } | null;
+  readonly bestShape: {
+    readonly periodDays: number;
+    readonly eccentricity: number;
+    readonly gain: number;
+  } | null;
 }
 
 export interface Found {
@@ -75,7 +83,13 @@ export function findCompanions(explorer: Explorer, onStage: (done: number) => vo
     }
     const { addition, alternatives } = nextAddition(explorer, best, search, choice, range);
     const all = addition === null ? alternatives : [addition.planned, ...alternatives];
-    stages.push({ search, companionsFitted: count, addition, alternatives, bestShape: bestShapeOf(explorer, best, all) });
+    stages.push({
+      search,
+      companionsFitted: count,
+      addition,
+      alternatives,
+      bestShape: bestShapeOf(explorer, best, all),
+    });
     onStage(count + 1);
     if (addition === null) break;
     if (wanted === null && !clears(addition, ACCEPTED)) {
@@ -113,11 +127,21 @@ function nextAddition(
   fits = fits.sort(byBic);
   const top = fits[0];
   if (top === undefined) return { addition: null, alternatives: [] };
-  const settled = explorer.settleStructure(top);
-  return { addition: measure(explorer, base, settled, fits, search), alternatives: fits.slice(1) };
+  let first: Addition | null = null;
+  // Where nights of many velocities favour a signal that does not survive nightly counting, the next one may.
+  for (const fit of fits.slice(0, QUESTIONED)) {
+    const addition = measure(explorer, base, explorer.settleStructure(fit), fits);
+    if (clears(addition, ACCEPTED)) return { addition, alternatives: fits.filter((other) => other !== fit) };
+    first ??= addition;
+  }
+  return { addition: first, alternatives: fits.slice(1) };
 }
 
-function bestShapeOf(explorer: Explorer, base: PlannedFit, fits: readonly PlannedFit[]): FoundStage['bestShape'] {
+function bestShapeOf(
+  explorer: Explorer,
+  base: PlannedFit,
+  fits: readonly PlannedFit[],
+): FoundStage['bestShape'] {
   const eccentric = fits.filter((planned) => !planned.plan.companions.at(-1)!.circular).sort(byLikelihood)[0];
   if (eccentric === undefined) return null;
   const companion = explorer.portable(eccentric).companions.at(-1)!;
@@ -128,33 +152,64 @@ function bestShapeOf(explorer: Explorer, base: PlannedFit, fits: readonly Planne
   };
 }
 
-/** Evidence of an addition over the model without it. */
-export function measure(
+/** Evidence of an addition over the model without it; where nights hold several velocities, the weaker of two countings. */
+function measure(
   explorer: Explorer,
   base: PlannedFit,
   top: PlannedFit,
   fits: readonly PlannedFit[],
-  search: StageSearch,
 ): Addition {
-  const n = explorer.builder.data.timesDays.length;
-  const baseline = base.fit.logLikelihood;
-  const gainOf = (circular: boolean): number =>
-    fits
+  const bestOf = (circular: boolean): PlannedFit | null =>
+    [top, ...fits]
       .filter(
         (planned) =>
           planned.plan.companions.at(-1)!.circular === circular && planned.plan.drift <= base.plan.drift,
       )
-      .reduce((gain, planned) => Math.max(gain, planned.fit.logLikelihood - baseline), 0);
-  const strongest = search.peaks[0]?.power ?? 0;
-  const power = Math.max(strongest, powerOfGain(gainOf(true), n));
-  const sinusoid = sinusoidFalseAlarm(power, search.setting) / SINUSOID_SHARE;
-  const shape = shapeFalseAlarm(gainOf(false), search.setting) / (1 - SINUSOID_SHARE);
-  return {
-    planned: top,
-    deltaLogLikelihood: top.fit.logLikelihood - baseline,
+      .sort(byLikelihood)[0] ?? null;
+  const variants = { circular: bestOf(true), eccentric: bestOf(false) };
+  const evidence = evidenceFromFits(explorer, base, top, variants);
+  return { planned: top, ...evidence };
+}
+
+/** Gains of `top` over `base`, and the false-alarm probability of the better of a sinusoid and an eccentric shape. */
+export function evidenceFromFits(
+  explorer: Explorer,
+  base: PlannedFit,
+  top: PlannedFit,
+  variants: { readonly circular: PlannedFit | null; readonly eccentric: PlannedFit | null },
+): Omit<Addition, 'planned'> {
+  const setting = falseAlarmSettingOf(explorer, base);
+  const gain = (planned: PlannedFit | null): number =>
+    planned === null ? 0 : planned.fit.logLikelihood - base.fit.logLikelihood;
+  const every = {
+    deltaLogLikelihood: gain(top),
     deltaBic: base.fit.bic - top.fit.bic,
-    falseAlarmProbability: Math.min(1, sinusoid, shape),
+    falseAlarmProbability: sharedFalseAlarm(gain(variants.circular), gain(variants.eccentric), setting),
   };
+  const nightly = nightlySupport(explorer, base, top);
+  if (nightly === null) return every;
+  const nightlyGain = (planned: PlannedFit | null): number =>
+    planned === null || planned.fit.status === 'failed'
+      ? 0
+      : nightly.explorer.fit(planned.plan, explorer.portable(planned)).fit.logLikelihood -
+        nightly.base.fit.logLikelihood;
+  const alarm = sharedFalseAlarm(
+    nightlyGain(variants.circular),
+    nightlyGain(variants.eccentric),
+    falseAlarmSettingOf(nightly.explorer, nightly.base),
+  );
+  return {
+    deltaLogLikelihood: every.deltaLogLikelihood,
+    deltaBic: Math.min(every.deltaBic, nightly.deltaBic),
+    falseAlarmProbability: Math.max(every.falseAlarmProbability, alarm),
+  };
+}
+
+/** False-alarm probability with the budget shared between sinusoids and eccentric shapes. */
+function sharedFalseAlarm(circularGain: number, eccentricGain: number, setting: FalseAlarmSetting): number {
+  const sinusoid = sinusoidFalseAlarm(powerOfGain(circularGain, setting.dataCount), setting) / SINUSOID_SHARE;
+  const shape = shapeFalseAlarm(eccentricGain, setting) / (1 - SINUSOID_SHARE);
+  return Math.min(1, sinusoid, shape);
 }
 
 /** Searches anew for each earlier companion with the others in place; adopts what lowers the BIC. */

@@ -41,7 +41,8 @@ export function permutationFalseAlarm(
       random.shuffle(order);
       group.forEach((to, k) => {
         const from = order[k]!;
-        shuffled[to] = background.residuals[from]! * Math.sqrt(background.weights[from]! / background.weights[to]!);
+        shuffled[to] =
+          background.residuals[from]! * Math.sqrt(background.weights[from]! / background.weights[to]!);
       });
     }
     const again = makeBackground(background.timesDays, shuffled, background.weights, background.basis);

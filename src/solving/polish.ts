@@ -9,7 +9,11 @@ import type { ModelPoint, VelocityProblem } from './problem.js';
 const GRADIENT_LIMIT = 1e-3;
 
 /** The point of a vector (parameters, free jitters); jitters are mirrored to be positive. */
-export function pointOfVector(problem: VelocityProblem, vector: Float64Array, jittersMps: Float64Array): ModelPoint {
+export function pointOfVector(
+  problem: VelocityProblem,
+  vector: Float64Array,
+  jittersMps: Float64Array,
+): ModelPoint {
   const p = problem.parameterCount;
   const jitters = Float64Array.from(jittersMps);
   problem.freeJitters.forEach((instrument, index) => {
@@ -19,7 +23,10 @@ export function pointOfVector(problem: VelocityProblem, vector: Float64Array, ji
 }
 
 export function vectorOfPoint(problem: VelocityProblem, point: ModelPoint): Float64Array {
-  return Float64Array.from([...point.parameters, ...problem.freeJitters.map((instrument) => point.jittersMps[instrument]!)]);
+  return Float64Array.from([
+    ...point.parameters,
+    ...problem.freeJitters.map((instrument) => point.jittersMps[instrument]!),
+  ]);
 }
 
 /**

@@ -193,6 +193,15 @@ export class VelocityProblem implements LeastSquaresProblem {
       const size = companions[c]!.size;
       const map = this.#maps[c]!;
       const offset = this.companionOffsets[c]!;
+      const { coordinateOf } = companions[c]!;
+      if (coordinateOf !== null) {
+        for (let j = 0; j < size; j++) {
+          const column = c * ORBIT_COORDINATES + coordinateOf[j]!;
+          for (let i = 0; i < n; i++)
+            jacobian[i * p + offset + j] = -this.#inverseSigmas[i]! * this.#partials[i * stride + column]!;
+        }
+        continue;
+      }
       for (let i = 0; i < n; i++) {
         const from = i * stride + c * ORBIT_COORDINATES;
         const scale = -this.#inverseSigmas[i]!;
@@ -254,7 +263,9 @@ export class VelocityProblem implements LeastSquaresProblem {
 
   /** Instruments whose jitter is free: their places in a vector (parameters, jitters). */
   get freeJitters(): number[] {
-    return this.structure.jitters.flatMap((jitter, instrument) => (jitter.highMps > jitter.lowMps ? [instrument] : []));
+    return this.structure.jitters.flatMap((jitter, instrument) =>
+      jitter.highMps > jitter.lowMps ? [instrument] : [],
+    );
   }
 
   /**

@@ -26,7 +26,14 @@ export function centralInterval(value: number, draws: Float64Array, unit: string
     for (let i = 0; i < finite.length; i++) finite[i]! -= cycle * Math.round((finite[i]! - value) / cycle);
   }
   if (finite.length < 100) {
-    return { value, sigma: null, lower: null, upper: null, unit, why: 'the data do not determine its uncertainty' };
+    return {
+      value,
+      sigma: null,
+      lower: null,
+      upper: null,
+      unit,
+      why: 'the data do not determine its uncertainty',
+    };
   }
   finite.sort();
   return {

@@ -25,7 +25,12 @@ export interface RivalSearch {
  * @param index - which of its companions
  * @param otherPeriods - further periods to refit, e.g. of other finalists of the search
  */
-export function rivalsOf(explorer: Explorer, best: PlannedFit, index: number, otherPeriods: readonly number[]): RivalSearch {
+export function rivalsOf(
+  explorer: Explorer,
+  best: PlannedFit,
+  index: number,
+  otherPeriods: readonly number[],
+): RivalSearch {
   const choice = best.plan.companions[index]!.choice;
   if (choice?.elements.period !== undefined) return { rivals: [], tried: 0, better: null };
   const portable = explorer.portable(best);
@@ -48,7 +53,11 @@ export function rivalsOf(explorer: Explorer, best: PlannedFit, index: number, ot
   for (const trial of trials) {
     const starts = startsNear(explorer, background, trial.frequencyPerDay, companion.eccentricity);
     const roughs = starts.map((element) =>
-      explorer.fit(best.plan, { ...portable, companions: portable.companions.map((c, i) => (i === index ? element : c)) }, ROUGH),
+      explorer.fit(
+        best.plan,
+        { ...portable, companions: portable.companions.map((c, i) => (i === index ? element : c)) },
+        ROUGH,
+      ),
     );
     const usable = roughs.filter((rough) => explorer.isInRange(rough)).sort(byBic);
     tried++;
@@ -60,7 +69,8 @@ export function rivalsOf(explorer: Explorer, best: PlannedFit, index: number, ot
     const apart = (period: number): boolean => Math.abs(1 / found.periodDays - 1 / period) > 0.5 * resolution;
     if (!apart(companion.periodDays) || !rivals.every((rival) => apart(rival.period))) continue;
     if (!explorer.isInRange(refit)) continue;
-    if (refit.fit.logDensity > best.fit.logDensity + 1e-3 && refit.fit.bic < (better ?? best).fit.bic) better = refit;
+    if (refit.fit.logDensity > best.fit.logDensity + 1e-3 && refit.fit.bic < (better ?? best).fit.bic)
+      better = refit;
     rivals.push({
       period: found.periodDays,
       kind: trial.kind,

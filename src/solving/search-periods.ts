@@ -21,11 +21,18 @@ export interface PeriodsReport {
   readonly method: string;
 }
 
-export function searchPeriods(theCase: Case, velocities: VelocitySet, options: PeriodsOptions): PeriodsReport {
+export function searchPeriods(
+  theCase: Case,
+  velocities: VelocitySet,
+  options: PeriodsOptions,
+): PeriodsReport {
   requireSolvable(velocities);
   const { explorer, spanDays } = explorerFor(theCase, velocities);
   options.onProgress?.('searching', 0);
-  const base = explorer.withBestDrift({ companions: [], drift: explorer.drifts[0]! }, explorer.builder.emptyPoint());
+  const base = explorer.withBestDrift(
+    { companions: [], drift: explorer.drifts[0]! },
+    explorer.builder.emptyPoint(),
+  );
   const search = explorer.search(base);
   const eccentric = explorer
     .bestAddition(base, search, null)
@@ -50,7 +57,8 @@ export function searchPeriods(theCase: Case, velocities: VelocitySet, options: P
     permutations > 0
       ? stage.peaks.map((peak) => ({
           ...peak,
-          falseAlarmProbability: permutationFalseAlarm(explorer, base, peak.power, permutations, seed).probability,
+          falseAlarmProbability: permutationFalseAlarm(explorer, base, peak.power, permutations, seed)
+            .probability,
         }))
       : stage.peaks;
   const drift = ['', ', and a linear drift', ', and a quadratic drift'][base.plan.drift]!;

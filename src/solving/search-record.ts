@@ -40,14 +40,18 @@ export function stageRecord(
 ): SearchStage {
   const { grid, setting } = search;
   const peaks = reportedPeaks(search, spanDays);
-  const beats = shape !== null && shape.gain > (peaks[0]?.deltaLogLikelihood ?? 0) + Math.log(setting.dataCount);
+  const beats =
+    shape !== null && shape.gain > (peaks[0]?.deltaLogLikelihood ?? 0) + Math.log(setting.dataCount);
   return {
     title:
       companionsFitted === 0
         ? 'velocities, zero points and drift refitted'
         : `after ${companionsFitted} companion${companionsFitted === 1 ? '' : 's'}, refitted at each frequency`,
     companionsFitted,
-    frequenciesPerDay: Float64Array.from({ length: grid.count }, (_, j) => grid.startPerDay + j * grid.stepPerDay),
+    frequenciesPerDay: Float64Array.from(
+      { length: grid.count },
+      (_, j) => grid.startPerDay + j * grid.stepPerDay,
+    ),
     power: search.power,
     levels: LEVELS.map((falseAlarmProbability) => ({
       falseAlarmProbability,

@@ -33,6 +33,11 @@ const TRIAL_ECCENTRICITIES = [0.45, 0.65, 0.8, 0.89, 0.94, 0.97] as const;
 
 /** Above this eccentricity phases are tried only where a strongly deviating point would sit in the periastron swing. */
 const ANCHORED_FROM = 0.85;
+/**
+ * Most points evaluated per eccentricity: about half a second. Long spans with many velocities are cut at the short
+ * periods, where the sinusoids still look.
+ */
+const LARGEST_EFFORT = 1e8;
 const ANCHORS = 5;
 const ANCHOR_TRUE_ANOMALIES_RAD = [-2, -1, 0, 1, 2] as const;
 
@@ -144,20 +149,39 @@ interface ScanData {
   readonly anchors: readonly number[];
 }
 
-function sortByInstrument(background: LinearBackground, instrumentOf: Uint16Array): ScanData {
-  const n = instrumentOf.length;
-  const order = Array.from({ length: n }, (_, i) => i).sort(
-    (a, b) => instrumentOf[a]! - instrumentOf[b]! || a - b,
+/** Velocities of one instrument closer together than this are scanned as one. */
+const MERGED_DAYS = 0.1;
+
+function scanData(background: LinearBackground, instrumentOf: Uint16Array): ScanData {
+  const order = Array.from(instrumentOf, (_, i) => i).sort(
+    (a, b) => instrumentOf[a]! - instrumentOf[b]! || background.timesDays[a]! - background.timesDays[b]!,
   );
-  const timesDays = Float64Array.from(order, (i) => background.timesDays[i]!);
-  const weights = Float64Array.from(order, (i) => background.weights[i]!);
-  const weightedResiduals = Float64Array.from(
-    order,
-    (i) => background.weights[i]! * background.residuals[i]!,
-  );
+  const merged: { time: number; weight: number; product: number; instrument: number; first: number }[] = [];
+  for (const i of order) {
+    const weight = background.weights[i]!;
+    const time = background.timesDays[i]!;
+    const last = merged.at(-1);
+    if (last !== undefined && last.instrument === instrumentOf[i] && time - last.first < MERGED_DAYS) {
+      last.time += (weight * (time - last.time)) / (last.weight + weight);
+      last.weight += weight;
+      last.product += weight * background.residuals[i]!;
+    } else {
+      merged.push({
+        time,
+        weight,
+        product: weight * background.residuals[i]!,
+        instrument: instrumentOf[i]!,
+        first: time,
+      });
+    }
+  }
+  const n = merged.length;
+  const timesDays = Float64Array.from(merged, ({ time }) => time);
+  const weights = Float64Array.from(merged, ({ weight }) => weight);
+  const weightedResiduals = Float64Array.from(merged, ({ product }) => product);
   const starts: number[] = [];
-  order.forEach((i, at) => {
-    if (at === 0 || instrumentOf[i] !== instrumentOf[order[at - 1]!]) starts.push(at);
+  merged.forEach(({ instrument }, at) => {
+    if (at === 0 || instrument !== merged[at - 1]!.instrument) starts.push(at);
   });
   const groupStarts = Int32Array.from([...starts, n]);
   const inverseGroupWeights = Float64Array.from(starts, (start, g) => {
@@ -252,9 +276,9 @@ function bestPhase(
  */
 export function scanShapes(background: LinearBackground, setting: ShapeScanSetting): ShapeStart[] {
   const { chiSquare } = background;
-  const n = background.timesDays.length;
-  if (n < 6 || !(chiSquare > 0)) return [];
-  const data = sortByInstrument(background, setting.instrumentOf);
+  if (background.timesDays.length < 6 || !(chiSquare > 0)) return [];
+  const data = scanData(background, setting.instrumentOf);
+  const n = data.timesDays.length;
   const { lowestFrequencyPerDay: low, highestFrequencyPerDay: high, spanDays: span } = setting;
   const board = new CellBoard(low, high, span);
   const position = new Float64Array(n);
@@ -270,7 +294,9 @@ export function scanShapes(background: LinearBackground, setting: ShapeScanSetti
     const anchored = eccentricity > ANCHORED_FROM;
     const offsets = anchorOffsets(eccentricity);
     const uniformPhases = Math.ceil(1.5 / width);
-    const steps = Math.floor((top - low) / stepPerDay);
+    const trialsPerStep = anchored ? data.anchors.length * offsets.length : uniformPhases;
+    const affordable = Math.floor(LARGEST_EFFORT / (trialsPerStep * n));
+    const steps = Math.min(Math.floor((top - low) / stepPerDay), affordable);
     for (let step = 0; step <= steps; step++) {
       const frequency = low + step * stepPerDay;
       for (let i = 0; i < n; i++) {

@@ -13,9 +13,17 @@ export function requireSolvable(velocities: VelocitySet): void {
   const issue = (code: string, message: string, hint: string): InputDataError =>
     new InputDataError([{ code, file, line: null, column: null, field: null, message, hint }]);
   if (count < FEWEST) {
-    throw issue('too-few-rows', `${count} velocities in all; an orbit needs at least ${FEWEST}`, 'add tables, or unflag rows');
+    throw issue(
+      'too-few-rows',
+      `${count} velocities in all; an orbit needs at least ${FEWEST}`,
+      'add tables, or unflag rows',
+    );
   }
   if (!(timesBjdTdb[count - 1]! > timesBjdTdb[0]!)) {
-    throw issue('no-time-span', 'all velocities are at one time', 'check which column is the time (--columns)');
+    throw issue(
+      'no-time-span',
+      'all velocities are at one time',
+      'check which column is the time (--columns)',
+    );
   }
 }

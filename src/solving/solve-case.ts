@@ -26,7 +26,11 @@ export interface SolveOptions {
   readonly quick: boolean;
   /** Permutations for false-alarm probabilities; 0 keeps the analytic bound. */
   readonly permutations: number;
-  readonly provenance: { readonly version: string; readonly node: string; readonly command: readonly string[] };
+  readonly provenance: {
+    readonly version: string;
+    readonly node: string;
+    readonly command: readonly string[];
+  };
   readonly onProgress?: (stage: string, fraction: number) => void;
 }
 
@@ -117,7 +121,9 @@ function settleRivals(explorer: Explorer, found: Found): { best: PlannedFit; riv
     }
     if (better === null || turn >= ADOPTIONS) {
       while (rivals.length < best.plan.companions.length)
-        rivals.push(rivalsOf(explorer, best, rivals.length, otherPeriods(explorer, found, best, rivals.length)));
+        rivals.push(
+          rivalsOf(explorer, best, rivals.length, otherPeriods(explorer, found, best, rivals.length)),
+        );
       return { best, rivals };
     }
     best = polish(explorer.settleStructure(better));
@@ -133,8 +139,13 @@ function otherPeriods(explorer: Explorer, found: Found, best: PlannedFit, index:
     return Math.abs(1 / own - 1 / period) * explorer.range.spanDays < 1;
   });
   if (stage === undefined) return [];
-  const finalists = stage.alternatives.map((planned) => explorer.portable(planned).companions.at(-1)!.periodDays);
-  return [...finalists, ...stage.search.peaks.slice(0, 6).map((peak) => 1 / peak.frequencyPerDay)].slice(0, 10);
+  const finalists = stage.alternatives.map(
+    (planned) => explorer.portable(planned).companions.at(-1)!.periodDays,
+  );
+  return [...finalists, ...stage.search.peaks.slice(0, 6).map((peak) => 1 / peak.frequencyPerDay)].slice(
+    0,
+    10,
+  );
 }
 
 function lettersOf(theCase: Case, best: PlannedFit): string[] {
@@ -154,7 +165,14 @@ function candidateRecords(explorer: Explorer, found: Found): CandidateRecord[] {
   if (found.candidate === null) return [];
   const { planned, falseAlarmProbability, deltaBic } = found.candidate;
   const companion = explorer.portable(planned).companions.at(-1)!;
-  return [{ period: companion.periodDays, semiAmplitude: companion.semiAmplitudeMps, falseAlarmProbability, deltaBic }];
+  return [
+    {
+      period: companion.periodDays,
+      semiAmplitude: companion.semiAmplitudeMps,
+      falseAlarmProbability,
+      deltaBic,
+    },
+  ];
 }
 
 function residualsOf(best: PlannedFit): Float64Array {

@@ -98,7 +98,12 @@ export function sampleAround(
 }
 
 /** One element of a companion; epochs as full dates. */
-export function elementQuantity(sampled: Sampled, index: number, key: ElementKey, epochBjdTdb: number): Quantity {
+export function elementQuantity(
+  sampled: Sampled,
+  index: number,
+  key: ElementKey,
+  epochBjdTdb: number,
+): Quantity {
   const unit = ELEMENT_UNITS[key];
   const { circular } = sampled.problem.structure.companions[index]!;
   const best = sampled.values.companions[index]!;
@@ -107,8 +112,10 @@ export function elementQuantity(sampled: Sampled, index: number, key: ElementKey
   const isTime = key === 'timeOfPeriastron' || key === 'timeOfInferiorConjunction';
   const shift = isTime ? epochBjdTdb : 0;
   const drawn = Float64Array.from(sampled.draws, (draw) => shift + draw.companions[index]![key]);
-  const spread = drawn.length > 0 ? Math.max(...sample(drawn).map((value) => Math.abs(value - drawn[0]!))) : 1;
-  if (drawn.length > 0 && spread <= 1e-12 * Math.abs(drawn[0]!)) return fixedQuantity(shift + best[key], unit);
+  const spread =
+    drawn.length > 0 ? Math.max(...sample(drawn).map((value) => Math.abs(value - drawn[0]!))) : 1;
+  if (drawn.length > 0 && spread <= 1e-12 * Math.abs(drawn[0]!))
+    return fixedQuantity(shift + best[key], unit);
   return centralInterval(shift + best[key], drawn, unit, key === 'argumentOfPeriastron' ? 360 : 0);
 }
 
@@ -117,7 +124,11 @@ function sample(values: Float64Array): number[] {
 }
 
 /** A quantity read from every draw by `read`. */
-export function drawnQuantity(sampled: Sampled, unit: string, read: (values: ReportedValues) => number): Quantity {
+export function drawnQuantity(
+  sampled: Sampled,
+  unit: string,
+  read: (values: ReportedValues) => number,
+): Quantity {
   return centralInterval(read(sampled.values), Float64Array.from(sampled.draws, read), unit);
 }
 
@@ -127,7 +138,11 @@ interface NamedReading {
 }
 
 /** What was fitted, in the order of the covariance matrix. */
-function fittedReadings(sampled: Sampled, letters: readonly string[], velocities: VelocitySet): NamedReading[] {
+function fittedReadings(
+  sampled: Sampled,
+  letters: readonly string[],
+  velocities: VelocitySet,
+): NamedReading[] {
   const { structure, freeJitters, linearColumns } = sampled.problem;
   const readings: NamedReading[] = [];
   structure.companions.forEach(({ circular }, c) => {
@@ -135,15 +150,23 @@ function fittedReadings(sampled: Sampled, letters: readonly string[], velocities
       ? ['period', 'timeOfInferiorConjunction', 'semiAmplitude']
       : ['period', 'eccentricity', 'argumentOfPeriastron', 'timeOfPeriastron', 'semiAmplitude'];
     for (const key of keys) {
-      readings.push({ name: `companions.${letters[c]!}.${key}`, read: (values) => values.companions[c]![key] });
+      readings.push({
+        name: `companions.${letters[c]!}.${key}`,
+        read: (values) => values.companions[c]![key],
+      });
     }
   });
   velocities.instruments.forEach((name, i) => {
     if (linearColumns[i]! >= 0)
-      readings.push({ name: `velocity.instruments.${name}.zeroPoint`, read: (values) => values.zeroPointsMps[i]! });
+      readings.push({
+        name: `velocity.instruments.${name}.zeroPoint`,
+        read: (values) => values.zeroPointsMps[i]!,
+      });
   });
-  if (structure.drift > 0) readings.push({ name: 'velocity.slope', read: (values) => values.slopeMpsPerYear });
-  if (structure.drift > 1) readings.push({ name: 'velocity.curvature', read: (values) => values.curvatureMpsPerYear2 });
+  if (structure.drift > 0)
+    readings.push({ name: 'velocity.slope', read: (values) => values.slopeMpsPerYear });
+  if (structure.drift > 1)
+    readings.push({ name: 'velocity.curvature', read: (values) => values.curvatureMpsPerYear2 });
   for (const i of freeJitters) {
     readings.push({
       name: `velocity.instruments.${velocities.instruments[i]!}.jitter`,

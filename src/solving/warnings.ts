@@ -58,7 +58,10 @@ const steepOrbits: Check = ({ companions }) =>
 
 const undetermined: Check = ({ companions }) =>
   companions
-    .filter(({ elements }) => elements.period.value !== null && elements.period.fixed !== true && elements.period.sigma === null)
+    .filter(
+      ({ elements }) =>
+        elements.period.value !== null && elements.period.fixed !== true && elements.period.sigma === null,
+    )
     .map(({ letter }) => ({
       code: 'uncertainty-unknown',
       message: `companion ${letter}: the curvature at the solution does not determine every element, so that no uncertainties are given`,

@@ -26,7 +26,11 @@ const NAMED: readonly { readonly frequencyPerDay: number; readonly name: string 
  * @param timesDays - (n), days since any epoch
  * @param weights - (n)
  */
-export function windowFunction(timesDays: Float64Array, weights: Float64Array, spanDays: number): WindowFunction {
+export function windowFunction(
+  timesDays: Float64Array,
+  weights: Float64Array,
+  spanDays: number,
+): WindowFunction {
   const resolution = 1 / spanDays;
   const start = 0.7 * resolution;
   const step = Math.max(resolution / 8, HIGHEST_FREQUENCY_PER_DAY / LARGEST_GRID);

@@ -15,6 +15,8 @@ export interface Parametrisation {
   readonly size: number;
   /** `true` when e = 0 is imposed. */
   readonly circular: boolean;
+  /** For each free parameter the coordinate that it is, when the parameters are coordinates themselves; null otherwise. */
+  readonly coordinateOf: readonly number[] | null;
   /** Number of prior rows (Gaussian priors stated by the user). */
   readonly priorCount: number;
   /**

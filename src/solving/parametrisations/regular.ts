@@ -9,6 +9,7 @@ export function regularParametrisation(circular: boolean): Parametrisation {
   return {
     size: used.length,
     circular,
+    coordinateOf: used,
     priorCount: 0,
     toCoordinates(free, offset, coordinates, jacobian): boolean {
       coordinates.fill(0);

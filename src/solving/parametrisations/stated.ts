@@ -109,6 +109,7 @@ export function statedParametrisation(
   return {
     size,
     circular,
+    coordinateOf: null,
     priorCount: priorDials.length,
     toCoordinates(free, offset, coordinates, jacobian): boolean {
       const [p, e, w, t, k] = values(free, offset) as [number, number, number, number, number];
