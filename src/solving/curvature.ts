@@ -130,22 +130,28 @@ export function gaussianDraws(
   const factor = Float64Array.from(covariance);
   if (!choleskyInPlace(factor, size)) return [];
   const draws: ModelPoint[] = [];
+  const shift = new Float64Array(size);
   const normals = new Float64Array(size);
-  for (let attempt = 0; attempt < 3 * count && draws.length < count; attempt++) {
+  for (let attempt = 0; attempt < 2 * count && draws.length < count; attempt++) {
     for (let j = 0; j < size; j++) normals[j] = random.normal();
-    const parameters = Float64Array.from(point.parameters);
-    const jittersMps = Float64Array.from(point.jittersMps);
     for (let j = 0; j < size; j++) {
-      let shift = 0;
-      for (let k = 0; k <= j; k++) shift += factor[j * size + k]! * normals[k]!;
-      if (j < p) parameters[j]! += shift;
-      else {
-        const instrument = freeJitters[j - p]!;
-        const { highMps } = problem.structure.jitters[instrument]!;
-        jittersMps[instrument] = Math.min(highMps, Math.abs(jittersMps[instrument]! + shift));
-      }
+      let sum = 0;
+      for (let k = 0; k <= j; k++) sum += factor[j * size + k]! * normals[k]!;
+      shift[j] = sum;
     }
-    if (isInDomain(problem, parameters)) draws.push({ parameters, jittersMps });
+    // Each draw comes with its mirror image, so that linear quantities have symmetric intervals exactly.
+    for (const sign of [1, -1]) {
+      const parameters = Float64Array.from(point.parameters, (value, j) => value + sign * shift[j]!);
+      const jittersMps = Float64Array.from(point.jittersMps);
+      freeJitters.forEach((instrument, index) => {
+        const { highMps } = problem.structure.jitters[instrument]!;
+        jittersMps[instrument] = Math.min(
+          highMps,
+          Math.abs(jittersMps[instrument]! + sign * shift[p + index]!),
+        );
+      });
+      if (draws.length < count && isInDomain(problem, parameters)) draws.push({ parameters, jittersMps });
+    }
   }
   return draws;
 }

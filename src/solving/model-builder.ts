@@ -49,10 +49,10 @@ export class ModelBuilder {
     this.#jitters = instruments.map((name, index) => {
       const choice = theCase.instruments[name]?.jitterMps ?? null;
       if (choice !== null) return jitterSetting(choice);
-      // A single velocity says nothing of its own scatter: its zero point absorbs it.
+      // One or two velocities say nothing of their own scatter: the zero point absorbs one.
       let count = 0;
       for (const instrument of data.instrumentOf) if (instrument === index) count++;
-      return { lowMps: 0, highMps: count < 2 ? 0 : LARGEST_JITTER_MPS, prior: null };
+      return { lowMps: 0, highMps: count < 3 ? 0 : LARGEST_JITTER_MPS, prior: null };
     });
   }
 

@@ -101,7 +101,7 @@ const terrestrialPeriods: Check = ({ explorer, companions }) =>
     const near = [
       { name: 'one day', value: 1 },
       { name: 'one year', value: 1 / 365.2422 },
-    ].find(({ value }) => Math.abs(frequency - value) < Math.max(1.5 / explorer.range.spanDays, 0.003 * value));
+    ].find(({ value }) => Math.abs(frequency - value) < Math.max(0.5 / explorer.range.spanDays, 0.003 * value));
     return near === undefined
       ? []
       : [{ code: 'terrestrial-period', message: `companion ${letter}: the period is close to ${near.name}; the phases that could be observed are few, and systematic effects of that period exist` }];

@@ -17,6 +17,7 @@ const NAMED: readonly { readonly frequencyPerDay: number; readonly name: string 
   { frequencyPerDay: SIDEREAL_DAY_PER_DAY, name: 'sidereal day' },
   { frequencyPerDay: 1, name: 'solar day' },
   { frequencyPerDay: 2 * SIDEREAL_DAY_PER_DAY, name: 'half sidereal day' },
+  { frequencyPerDay: 1 + SIDEREAL_DAY_PER_DAY, name: 'half day' },
   { frequencyPerDay: 2, name: 'half solar day' },
 ];
 
