@@ -15,7 +15,14 @@ import {
 } from './case-values.js';
 import { quoted } from './text.js';
 
-const site = mapping({
+interface SiteEntry {
+  readonly name: string;
+  readonly latitude: number;
+  readonly longitude: number;
+  readonly elevation: number;
+}
+
+const site: z.ZodType<SiteEntry> = mapping({
   name: text,
   latitude: single('angle', between(-90, 90)),
   longitude: single('angle', between(-180, 360)), // positive east
@@ -23,12 +30,25 @@ const site = mapping({
 });
 
 /** `mock` writes into its own folder only: a name with a path in it is refused. */
-const plainFileName = text.superRefine((name, context) => {
+const plainFileName: z.ZodType<string> = text.superRefine((name, context) => {
   if (/[/\\]|^\.\.?$|[\u0000-\u001f]/.test(name))
     complain(context, `found ${quoted(name)}; a plain file name is expected, without a folder`);
 });
 
-const instrument = mapping({
+interface InstrumentEntry {
+  readonly name: string;
+  readonly table: string;
+  readonly unit: 'm/s' | 'km/s';
+  readonly count: number;
+  readonly 'zero-point': number;
+  readonly jitter: number;
+  readonly error: number;
+  readonly 'error-scatter': number;
+  readonly from: number;
+  readonly to: number;
+}
+
+const instrument: z.ZodType<InstrumentEntry> = mapping({
   name: text,
   table: plainFileName,
   unit: word(['m/s', 'km/s']).default('m/s'),
@@ -43,7 +63,15 @@ const instrument = mapping({
   if (from >= to) complain(context, 'from must be earlier than to', '', ['to']);
 });
 
-const companion = mapping({
+interface CompanionEntry {
+  readonly period: number;
+  readonly eccentricity: number;
+  readonly 'argument-of-periastron': number;
+  readonly 'time-of-periastron': number;
+  readonly 'semi-amplitude': number;
+}
+
+const companion: z.ZodType<CompanionEntry> = mapping({
   period: single('period', POSITIVE),
   eccentricity: single('number', ECCENTRICITY).default(0),
   'argument-of-periastron': single('angle', between(-360, 360)).default(90),
@@ -51,7 +79,21 @@ const companion = mapping({
   'semi-amplitude': single('velocity', NOT_NEGATIVE),
 });
 
-export const mockSchema = mapping({
+/** The section as read, in canonical units (angles deg, velocities m/s, dates BJD_TDB), its defaults filled in. */
+export interface MockEntry {
+  readonly site: SiteEntry;
+  readonly position: { readonly 'right-ascension': number; readonly declination: number };
+  readonly 'weather-loss': number;
+  readonly 'maximum-airmass': number;
+  readonly twilight: number;
+  readonly instruments: readonly InstrumentEntry[];
+  readonly companions: readonly CompanionEntry[];
+  readonly slope: number;
+  readonly curvature: number;
+  readonly epoch?: number | undefined;
+}
+
+export const mockSchema: z.ZodType<MockEntry> = mapping({
   site,
   position: mapping({
     'right-ascension': single('angle', between(0, 360)),
@@ -73,4 +115,3 @@ export const mockSchema = mapping({
     seen.add(name);
   }
 });
-export type MockEntry = z.output<typeof mockSchema>;

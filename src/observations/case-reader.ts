@@ -11,7 +11,7 @@ import {
   type CompanionEntry,
   type TableEntry,
 } from './case-schema.js';
-import { readYaml } from './case-yaml.js';
+import { readYaml, type Place, type YamlText } from './case-yaml.js';
 import { IssueList } from './issues.js';
 import { parseMeasured } from './quantity.js';
 import { readTextFile } from './read-text.js';
@@ -63,13 +63,13 @@ export function parseCase(text: string, path: string): Case {
     });
   else {
     const result = caseSchema.safeParse(yaml.value);
-    if (result.success) return toCase(result.data, path);
+    if (result.success) return toCase(result.data, path, yaml);
     addSchemaIssues(result.error.issues, yaml, issues);
   }
   throw new InputDataError(issues.list());
 }
 
-function toCase(entry: CaseEntry, path: string): Case {
+function toCase(entry: CaseEntry, path: string, yaml: YamlText): Case {
   const circular = entry.circular ?? 'auto';
   const companions = entry.companions ?? 'auto';
   return {
@@ -85,7 +85,7 @@ function toCase(entry: CaseEntry, path: string): Case {
     maximumCompanions: entry.search?.['at-most'] ?? DEFAULT_MOST_COMPANIONS,
     drift: entry.drift ?? 'auto',
     circular,
-    instruments: toInstruments(entry.instruments ?? {}),
+    instruments: toInstruments(entry.instruments ?? {}, yaml),
     periodRangeDays: {
       low: entry.search?.['shortest-period'] ?? null,
       high: entry.search?.['longest-period'] ?? null,
@@ -136,28 +136,40 @@ function toCompanions(list: readonly CompanionEntry[], circular: boolean | 'auto
   });
 }
 
+/**
+ * Where a case file names each instrument. A case is a plain value without places; this one is needed once more, when
+ * the tables are there to hold the names against. It follows the choices through copies of the case.
+ */
+const instrumentPlaces = new WeakMap<Case['instruments'], ReadonlyMap<string, Place>>();
+
 /** Without a prototype, so that an instrument called `constructor` finds nothing that was not written. */
 function toInstruments(
   entries: NonNullable<CaseEntry['instruments']>,
+  yaml: YamlText,
 ): Readonly<Record<string, InstrumentChoice>> {
   const choices = Object.create(null) as Record<string, InstrumentChoice>;
+  const places = new Map<string, Place>();
   for (const [name, entry] of Object.entries(entries)) {
     choices[name] = { zeroPointMps: entry['zero-point'] ?? null, jitterMps: entry.jitter ?? null };
+    places.set(name, yaml.placeOfKey(['instruments'], name));
   }
+  instrumentPlaces.set(choices, places);
   return choices;
 }
 
 /**
  * Holds the instruments that a case makes choices for against those that the tables have.
  *
- * @throws InputDataError naming each unknown instrument, with "did you mean"
+ * @throws InputDataError naming each unknown instrument with its line in the case, and the one that was meant or all that there are
  */
 export function checkInstrumentChoices(theCase: Case, velocities: VelocitySet): void {
   const issues = new IssueList(theCase.path ?? 'case');
+  const places = instrumentPlaces.get(theCase.instruments);
   for (const name of Object.keys(theCase.instruments)) {
     if (velocities.instruments.includes(name)) continue;
     issues.add({
       code: 'unknown-instrument',
+      ...places?.get(name),
       field: `instruments.${name}`,
       message: `no table has an instrument ${quoted(name)}`,
       hint: didYouMean(name, velocities.instruments),

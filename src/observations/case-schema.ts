@@ -20,26 +20,34 @@ import {
   wholeNumber,
   word,
 } from './case-values.js';
-import { mockSchema } from './case-mock-schema.js';
+import { mockSchema, type MockEntry } from './case-mock-schema.js';
 import { quoted } from './text.js';
 import { readTimeLabel, type TimeLabel } from './time-label.js';
-import type { ElementChoice } from './types.js';
+import type { DriftChoice, ElementChoice, Measured } from './types.js';
 
 export const MOST_COMPANIONS = 20;
 export const DEFAULT_MOST_COMPANIONS = 5;
 
-const star = mapping({
+interface StarEntry {
+  readonly mass?: Measured | undefined;
+  readonly radius?: Measured | undefined;
+  readonly temperature?: Measured | undefined;
+}
+
+const star: z.ZodType<StarEntry> = mapping({
   mass: measured('star mass', POSITIVE).optional(),
   radius: measured('star radius', POSITIVE).optional(),
   temperature: measured('temperature', POSITIVE).optional(),
 });
 
 /** A label of the header, or a position from 1. */
-const columnName = z.union([z.string().min(1).max(200), z.int().min(1).max(500)], {
+type ColumnName = string | number;
+
+const columnName: z.ZodType<ColumnName> = z.union([z.string().min(1).max(200), z.int().min(1).max(500)], {
   error: 'a label of the header, or a position from 1, is expected',
 });
 
-const timeDeclaration = z
+const timeDeclaration: z.ZodType<TimeLabel> = z
   .string({ error: 'a time scale is expected, e.g. BJD_TDB or BJD_TDB - 2450000' })
   .transform((written, context): TimeLabel => {
     const label = readTimeLabel(written);
@@ -52,7 +60,23 @@ const timeDeclaration = z
     return z.NEVER;
   });
 
-const tableMapping = mapping({
+export interface TableEntry {
+  readonly file: string;
+  readonly instrument?: string | undefined;
+  readonly unit?: 'm/s' | 'km/s' | undefined;
+  readonly time?: TimeLabel | undefined;
+  readonly columns?:
+    | {
+        readonly time?: ColumnName | undefined;
+        readonly velocity?: ColumnName | undefined;
+        readonly error?: ColumnName | undefined;
+        readonly instrument?: ColumnName | undefined;
+        readonly quality?: ColumnName | undefined;
+      }
+    | undefined;
+}
+
+const tableMapping: z.ZodType<TableEntry> = mapping({
   file: text,
   instrument: text.optional(),
   unit: word(['m/s', 'km/s']).optional(),
@@ -65,14 +89,25 @@ const tableMapping = mapping({
     quality: columnName.optional(),
   }).optional(),
 });
-export type TableEntry = z.output<typeof tableMapping>;
 
 /** A file name alone, or a mapping with what is declared of it. */
-const table = byShape<TableEntry>((value) =>
+const table: z.ZodType<TableEntry> = byShape<TableEntry>((value) =>
   typeof value === 'object' && value !== null ? tableMapping : text.transform((file) => ({ file })),
 );
 
-const companionMapping = mapping({
+export interface CompanionEntry {
+  readonly letter?: string | undefined;
+  readonly period?: ElementChoice | undefined;
+  readonly eccentricity?: ElementChoice | undefined;
+  readonly 'argument-of-periastron'?: ElementChoice | undefined;
+  readonly 'time-of-periastron'?: ElementChoice | undefined;
+  readonly 'time-of-inferior-conjunction'?: ElementChoice | undefined;
+  readonly 'semi-amplitude'?: ElementChoice | undefined;
+  readonly inclination?: Measured | undefined;
+  readonly circular?: boolean | 'auto' | undefined;
+}
+
+const companionMapping: z.ZodType<CompanionEntry> = mapping({
   letter: z
     .string()
     .regex(/^[b-z]$/, { error: 'a letter from b to z is expected' })
@@ -112,15 +147,15 @@ const companionMapping = mapping({
     ]);
   }
 });
-export type CompanionEntry = z.output<typeof companionMapping>;
 
 export function isZero(found: ElementChoice): boolean {
   return found.kind === 'fixed' && found.value === 0;
 }
 
-type Companions = 'auto' | number | CompanionEntry[];
+/** As many as the data pay for, a number of them, or each described. */
+type CompanionsEntry = 'auto' | number | CompanionEntry[];
 
-const companionList = z
+const companionList: z.ZodType<CompanionEntry[]> = z
   .array(companionMapping)
   .min(1, { error: 'the list of companions is empty; write 0 for none' })
   .max(MOST_COMPANIONS, { error: `at most ${MOST_COMPANIONS} companions are allowed` })
@@ -133,7 +168,7 @@ const companionList = z
     }
   });
 
-const companions = byShape<Companions>((value) => {
+const companions: z.ZodType<CompanionsEntry> = byShape<CompanionsEntry>((value) => {
   if (Array.isArray(value)) return companionList;
   if (typeof value === 'number') return wholeNumber(0, MOST_COMPANIONS);
   return z.unknown().transform((written, context): 'auto' => {
@@ -147,12 +182,23 @@ const companions = byShape<Companions>((value) => {
   });
 });
 
-const instrument = mapping({
+interface InstrumentEntry {
+  readonly 'zero-point'?: ElementChoice | undefined;
+  readonly jitter?: ElementChoice | undefined;
+}
+
+const instrument: z.ZodType<InstrumentEntry> = mapping({
   'zero-point': choice('velocity', ANY).optional(),
   jitter: choice('velocity', NOT_NEGATIVE).optional(),
 });
 
-const search = mapping({
+interface SearchEntry {
+  readonly 'shortest-period'?: number | undefined;
+  readonly 'longest-period'?: number | undefined;
+  readonly 'at-most'?: number | undefined;
+}
+
+const search: z.ZodType<SearchEntry> = mapping({
   'shortest-period': single('period', POSITIVE).optional(),
   'longest-period': single('period', POSITIVE).optional(),
   'at-most': wholeNumber(0, MOST_COMPANIONS).optional(),
@@ -162,7 +208,20 @@ const search = mapping({
     complain(context, 'shortest-period must be below longest-period', '', ['longest-period']);
 });
 
-export const caseSchema = mapping({
+/** A whole case as written, each value read, nothing filled in yet. */
+export interface CaseEntry {
+  readonly target: string;
+  readonly star?: StarEntry | undefined;
+  readonly tables?: readonly TableEntry[] | undefined;
+  readonly companions?: CompanionsEntry | undefined;
+  readonly drift?: DriftChoice | undefined;
+  readonly circular?: boolean | 'auto' | undefined;
+  readonly instruments?: Readonly<Record<string, InstrumentEntry>> | undefined;
+  readonly search?: SearchEntry | undefined;
+  readonly mock?: MockEntry | undefined;
+}
+
+export const caseSchema: z.ZodType<CaseEntry> = mapping({
   target: text,
   star: star.optional(),
   tables: z.array(table).max(500, { error: 'at most 500 tables are allowed' }).optional(),
@@ -177,4 +236,3 @@ export const caseSchema = mapping({
     complain(context, 'the case names no table', 'add tables: [ north.csv ]');
   }
 });
-export type CaseEntry = z.output<typeof caseSchema>;

@@ -1,7 +1,8 @@
 /** Uncertainty from the curvature of the log-density at its maximum, and draws from the Gaussian that it defines. */
 import { choleskyInPlace, invertSymmetricPositive } from '../numerics/linear-algebra.js';
 import type { RandomStream } from '../numerics/random.js';
-import type { ModelPoint, VelocityProblem } from './problem.js';
+import type { VelocityProblem } from './problem.js';
+import type { ModelPoint } from './model-structure.js';
 
 export interface Curvature {
   /** Covariance of (parameters, free jitters), row-major; null when the data do not determine every parameter. */

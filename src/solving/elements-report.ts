@@ -4,7 +4,8 @@ import { conjunctionDelayDays } from '../orbit/conversions.js';
 import type { OrbitElements } from '../orbit/elements.js';
 import { portableOf } from './model-builder.js';
 import type { RelativeElements } from './parametrisations/parametrisation.js';
-import type { ModelPoint, VelocityProblem } from './problem.js';
+import type { VelocityProblem } from './problem.js';
+import type { ModelPoint } from './model-structure.js';
 import type { ElementKey } from './types.js';
 
 const DEGREES = 180 / Math.PI;

@@ -46,7 +46,8 @@ export function evidenceOf(
   return {
     deltaLogLikelihood,
     deltaBic,
-    falseAlarmProbability: permuted === null ? falseAlarmProbability : permuted.probability,
+    falseAlarmProbability:
+      permuted === null || permuted.exceeding === 0 ? falseAlarmProbability : permuted.probability,
     falseAlarmMethod:
       permuted === null
         ? 'analytic bound of Baluev 2008 with the noise level refitted, shared between sinusoids and eccentric shapes'

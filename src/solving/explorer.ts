@@ -166,7 +166,7 @@ export class Explorer {
   settleStructure(start: PlannedFit): PlannedFit {
     let best = start;
     for (let turn = 0; turn < 8; turn++) {
-      let better: PlannedFit | null = null;
+      let better = null as PlannedFit | null;
       const consider = (other: PlannedFit, margin: number): void => {
         if (other.fit.status === 'failed' || !this.isInRange(other)) return;
         if (other.fit.bic < (better ?? best).fit.bic - margin) better = other;

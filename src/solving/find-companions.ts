@@ -30,6 +30,8 @@ export interface Addition {
   readonly deltaLogLikelihood: number;
   readonly deltaBic: number;
   readonly falseAlarmProbability: number;
+  /** Whether counting each night once was asked for and made the evidence what it is. */
+  readonly countedByNight: boolean;
 }
 
 export interface FoundStage {
@@ -133,6 +135,7 @@ function nextAddition(
     const addition = measure(explorer, base, explorer.settleStructure(fit), fits);
     if (clears(addition, ACCEPTED)) return { addition, alternatives: fits.filter((other) => other !== fit) };
     first ??= addition;
+    if (!addition.countedByNight) break;
   }
   return { addition: first, alternatives: fits.slice(1) };
 }
@@ -185,6 +188,7 @@ export function evidenceFromFits(
     deltaLogLikelihood: gain(top),
     deltaBic: base.fit.bic - top.fit.bic,
     falseAlarmProbability: sharedFalseAlarm(gain(variants.circular), gain(variants.eccentric), setting),
+    countedByNight: false,
   };
   const nightly = nightlySupport(explorer, base, top);
   if (nightly === null) return every;
@@ -202,6 +206,7 @@ export function evidenceFromFits(
     deltaLogLikelihood: every.deltaLogLikelihood,
     deltaBic: Math.min(every.deltaBic, nightly.deltaBic),
     falseAlarmProbability: Math.max(every.falseAlarmProbability, alarm),
+    countedByNight: true,
   };
 }
 

@@ -4,7 +4,8 @@
  */
 import { minimiseLeastSquares } from '../numerics/least-squares.js';
 import { updateJitters } from './jitter.js';
-import type { ModelPoint, VelocityProblem } from './problem.js';
+import type { VelocityProblem } from './problem.js';
+import type { ModelPoint } from './model-structure.js';
 
 export interface ModelFit {
   readonly problem: VelocityProblem;

@@ -1,6 +1,6 @@
 /** Jitter of one instrument by maximum likelihood at given residuals. */
 import type { VelocityData } from '../signals/velocity-term.js';
-import type { JitterSetting } from './problem.js';
+import type { JitterSetting } from './model-structure.js';
 
 /**
  * Maximises -1/2 sum [r^2/(sigma^2 + s^2) + ln(sigma^2 + s^2)] (and the prior, if any) over s in the allowed range for

@@ -10,7 +10,8 @@ import {
 } from './parametrisations/parametrisation.js';
 import { regularParametrisation } from './parametrisations/regular.js';
 import { statedParametrisation } from './parametrisations/stated.js';
-import { VelocityProblem, type JitterSetting, type ModelPoint } from './problem.js';
+import { VelocityProblem } from './problem.js';
+import type { JitterSetting, ModelPoint } from './model-structure.js';
 
 /** One companion of a model: what the case says about it, and whether e = 0 is imposed. */
 export interface CompanionPlan {

@@ -3,7 +3,8 @@ import { minimiseSmooth } from '../numerics/minimise.js';
 import type { PlannedFit } from './explorer.js';
 import { expectedInformation } from './curvature.js';
 import type { ModelFit } from './fit-model.js';
-import type { ModelPoint, VelocityProblem } from './problem.js';
+import type { VelocityProblem } from './problem.js';
+import type { ModelPoint } from './model-structure.js';
 
 /** Largest gradient, in units of one uncertainty per parameter, at which the point counts as the maximum. */
 const GRADIENT_LIMIT = 1e-3;

@@ -3,39 +3,11 @@
  * least squares, and log-likelihood, log-density and gradient for everything else, from the same code.
  */
 import type { LeastSquaresProblem } from '../numerics/least-squares.js';
-import type { ElementChoice } from '../observations/types.js';
 import { ORBIT_COORDINATES } from '../signals/keplerian.js';
-import {
-  VelocityTerm,
-  linearParameterCount,
-  type DriftDegree,
-  type VelocityData,
-} from '../signals/velocity-term.js';
-import type { Parametrisation } from './parametrisations/parametrisation.js';
+import { VelocityTerm, linearParameterCount, type VelocityData } from '../signals/velocity-term.js';
+import type { ModelPoint, ModelStructure } from './model-structure.js';
 
 const LOG_TWO_PI = Math.log(2 * Math.PI);
-
-/** Bounds of one instrument's jitter, m/s, and an optional Gaussian prior; equal bounds fix it. */
-export interface JitterSetting {
-  readonly lowMps: number;
-  readonly highMps: number;
-  readonly prior: { readonly centre: number; readonly sigma: number } | null;
-}
-
-/** What is fitted: companions (with their parametrisations), drift, zero points and jitters. */
-export interface ModelStructure {
-  readonly companions: readonly Parametrisation[];
-  readonly drift: DriftDegree;
-  /** One per instrument; `null` leaves the zero point free. */
-  readonly zeroPoints: readonly (ElementChoice | null)[];
-  readonly jitters: readonly JitterSetting[];
-}
-
-/** A point of the parameter space: mean-model parameters and one jitter per instrument, m/s. */
-export interface ModelPoint {
-  readonly parameters: Float64Array;
-  readonly jittersMps: Float64Array;
-}
 
 export class VelocityProblem implements LeastSquaresProblem {
   readonly data: VelocityData;

@@ -6,6 +6,16 @@
 import { solveKeplerArray } from '../orbit/kepler-array.js';
 import { TWO_PI } from '../orbit/constants.js';
 import type { LinearBackground } from './linear-background.js';
+import { scanData, type ScanData } from './scan-data.js';
+import {
+  ANCHORED_FROM,
+  TRIAL_ECCENTRICITIES,
+  anchorOffsets,
+  shapeTable,
+  shortestPeriodDays,
+  swingWidth,
+  type ShapeTable,
+} from './shape-grid.js';
 
 /** A start found by the scan. */
 export interface ShapeStart {
@@ -28,70 +38,11 @@ export interface ShapeScanSetting {
   readonly starts: number;
 }
 
-/** Trial eccentricities; between neighbours the shapes overlap enough for the nonlinear fit to walk across. */
-const TRIAL_ECCENTRICITIES = [0.45, 0.65, 0.8, 0.89, 0.94, 0.97] as const;
-
-/** Above this eccentricity phases are tried only where a strongly deviating point would sit in the periastron swing. */
-const ANCHORED_FROM = 0.85;
 /**
  * Most points evaluated per eccentricity: about half a second. Long spans with many velocities are cut at the short
  * periods, where the sinusoids still look.
  */
 const LARGEST_EFFORT = 1e8;
-const ANCHORS = 5;
-const ANCHOR_TRUE_ANOMALIES_RAD = [-2, -1, 0, 1, 2] as const;
-
-/**
- * Shortest period searched at an eccentricity: the periastron distance of an orbit about one solar mass stays above
- * 0.01 au (two solar radii), P = 365.25 d (0.01/(1 - e))^1.5.
- */
-function shortestPeriodDays(eccentricity: number): number {
-  return 365.25 * (0.01 / (1 - eccentricity)) ** 1.5;
-}
-
-/** Width of the periastron swing as a fraction of the period: 1 / (2 dnu/dM at periastron / pi). */
-function swingWidth(eccentricity: number): number {
-  return Math.min(0.5, (1.6 * ((1 - eccentricity) * (1 - eccentricity ** 2) ** 0.5)) / (1 + eccentricity));
-}
-
-interface ShapeTable {
-  readonly size: number;
-  readonly cosNu: Float64Array;
-  readonly sinNu: Float64Array;
-}
-
-const tables = new Map<number, ShapeTable>();
-
-/** cos nu and sin nu on a uniform grid of the mean anomaly over one revolution. */
-function shapeTable(eccentricity: number): ShapeTable {
-  const known = tables.get(eccentricity);
-  if (known !== undefined) return known;
-  const size = eccentricity > 0.9 ? 16384 : 4096;
-  const meanAnomalies = Float64Array.from({ length: size }, (_, i) => (TWO_PI * (i + 0.5)) / size);
-  const sinE = new Float64Array(size);
-  const cosE = new Float64Array(size);
-  solveKeplerArray(meanAnomalies, eccentricity, sinE, cosE);
-  const eta = Math.sqrt(1 - eccentricity ** 2);
-  const cosNu = new Float64Array(size);
-  const sinNu = new Float64Array(size);
-  for (let i = 0; i < size; i++) {
-    const inverse = 1 / (1 - eccentricity * cosE[i]!);
-    cosNu[i] = (cosE[i]! - eccentricity) * inverse;
-    sinNu[i] = eta * sinE[i]! * inverse;
-  }
-  const table = { size, cosNu, sinNu };
-  tables.set(eccentricity, table);
-  return table;
-}
-
-/** Fractions of a revolution: mean anomalies at which the anchors' trial true anomalies lie. */
-function anchorOffsets(eccentricity: number): number[] {
-  return ANCHOR_TRUE_ANOMALIES_RAD.map((nu) => {
-    const half = Math.sqrt((1 - eccentricity) / (1 + eccentricity)) * Math.tan(nu / 2);
-    const eccentric = 2 * Math.atan(half);
-    return (eccentric - eccentricity * Math.sin(eccentric)) / TWO_PI;
-  });
-}
 
 /** Best start per frequency cell of one resolution element. */
 class CellBoard {
@@ -134,73 +85,6 @@ class CellBoard {
     }
     return peaks.sort((a, b) => b.power - a.power).slice(0, count);
   }
-}
-
-/** Data of a scan sorted by instrument, so that a mean per instrument is projected out with one pair of sums each. */
-interface ScanData {
-  readonly timesDays: Float64Array;
-  readonly weights: Float64Array;
-  readonly weightedResiduals: Float64Array;
-  /** First index of each instrument's run, and the end of the last. */
-  readonly groupStarts: Int32Array;
-  readonly inverseGroupWeights: Float64Array;
-  readonly totalWeight: number;
-  /** Indices of the points that deviate most. */
-  readonly anchors: readonly number[];
-}
-
-/** Velocities of one instrument closer together than this are scanned as one. */
-const MERGED_DAYS = 0.1;
-
-function scanData(background: LinearBackground, instrumentOf: Uint16Array): ScanData {
-  const order = Array.from(instrumentOf, (_, i) => i).sort(
-    (a, b) => instrumentOf[a]! - instrumentOf[b]! || background.timesDays[a]! - background.timesDays[b]!,
-  );
-  const merged: { time: number; weight: number; product: number; instrument: number; first: number }[] = [];
-  for (const i of order) {
-    const weight = background.weights[i]!;
-    const time = background.timesDays[i]!;
-    const last = merged.at(-1);
-    if (last !== undefined && last.instrument === instrumentOf[i] && time - last.first < MERGED_DAYS) {
-      last.time += (weight * (time - last.time)) / (last.weight + weight);
-      last.weight += weight;
-      last.product += weight * background.residuals[i]!;
-    } else {
-      merged.push({
-        time,
-        weight,
-        product: weight * background.residuals[i]!,
-        instrument: instrumentOf[i]!,
-        first: time,
-      });
-    }
-  }
-  const n = merged.length;
-  const timesDays = Float64Array.from(merged, ({ time }) => time);
-  const weights = Float64Array.from(merged, ({ weight }) => weight);
-  const weightedResiduals = Float64Array.from(merged, ({ product }) => product);
-  const starts: number[] = [];
-  merged.forEach(({ instrument }, at) => {
-    if (at === 0 || instrument !== merged[at - 1]!.instrument) starts.push(at);
-  });
-  const groupStarts = Int32Array.from([...starts, n]);
-  const inverseGroupWeights = Float64Array.from(starts, (start, g) => {
-    let sum = 0;
-    for (let i = start; i < groupStarts[g + 1]!; i++) sum += weights[i]!;
-    return 1 / sum;
-  });
-  const deviation = (i: number): number => Math.abs(weightedResiduals[i]!) / Math.sqrt(weights[i]!);
-  return {
-    timesDays,
-    weights,
-    weightedResiduals,
-    groupStarts,
-    inverseGroupWeights,
-    totalWeight: weights.reduce((sum, w) => sum + w, 0),
-    anchors: Array.from({ length: n }, (_, i) => i)
-      .sort((a, b) => deviation(b) - deviation(a))
-      .slice(0, ANCHORS),
-  };
 }
 
 /**
@@ -261,7 +145,7 @@ function bestPhase(
     const determinant = cc * ss - cs * cs;
     if (!(determinant > 1e-6 * (cc + ss) * (cc + ss))) continue;
     const gain = (ss * yc * yc + cc * ys * ys - 2 * cs * yc * ys) / determinant;
-    if (gain > best[0]!) {
+    if (gain > best[0]) {
       best[0] = gain;
       best[1] = phase;
     }

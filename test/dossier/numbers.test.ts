@@ -81,6 +81,18 @@ describe('formatQuantity', () => {
     );
   });
 
+  it('shows one error, the mean, when the two are within a tenth of each other', () => {
+    expect(formatQuantity(q(10, 9.005, 11.005), 'text')).toBe('10.0 ± 1.0');
+    expect(formatQuantity(q(-4.3, -4.69, -3.89), 'text')).toBe('-4.30 ± 0.40');
+    expect(formatQuantity(q(-4.3, -4.69, -3.86), 'text')).toBe('-4.30 +0.44 -0.39'); // 12 % apart
+    // Errors 0.0100 and 0.0102: 2 % of their mean, 0.0101.
+    expect(formatQuantity(q(0.25, 0.2398, 0.26), 'markdown')).toBe('0.250 ± 0.010');
+    // Errors 21 and 19 are exactly a tenth of 20 apart, which is no longer less.
+    expect(formatQuantity(q(300, 281, 321), 'text')).toBe('300 +21 -19');
+    // The mean counts, not the smaller error: 21 and 19.05 are 9.7 % of 20.025 apart, but 10.2 % of 19.05.
+    expect(formatQuantity(q(300, 280.95, 321), 'text')).toBe('300 ± 20');
+  });
+
   it('marks fixed values and explains unknown ones', () => {
     const base = { sigma: null, lower: null, upper: null };
     expect(formatQuantity({ ...base, value: 90, unit: 'deg', fixed: true }, 'text')).toBe('90 deg (fixed)');

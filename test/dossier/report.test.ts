@@ -27,10 +27,10 @@ describe('report.md', () => {
   });
 
   it('states the orbit and the mass with their uncertainties', () => {
-    // Rounded by hand from the fixture: 41.6321 ± 0.0141 d, 38.41 ± 0.552 m/s, 0.7123 +0.0227 -0.0212 M_jup.
+    // Rounded by hand from the fixture: 41.6321 ± 0.0141 d, 38.41 ± 0.552 m/s, 0.7123 +0.0257 -0.0212 M_jup.
     expect(text).toContain('goes round in 41.632 ± 0.014 d');
     expect(text).toContain('a semi-amplitude of 38.41 ± 0.55 m/s');
-    expect(text).toContain('0.712 (+0.023, −0.021) M_jup for a star of 0.940 ± 0.030 M_sun');
+    expect(text).toContain('0.712 (+0.026, −0.021) M_jup for a star of 0.940 ± 0.030 M_sun');
   });
 
   it('states the conventions in words', () => {
@@ -61,11 +61,19 @@ describe('report.md', () => {
     expect(sampled).not.toContain('come from the curvature');
   });
 
+  it('says when two sides of an interval are written as one', () => {
+    expect(text).toContain('sides that differ by less than 10 % of their mean are written as one ±');
+  });
+
   it('says that nothing was found, and that an unusable fit must not be cited', () => {
-    const none = report(solvedFixture({ companions: [] }), NOTHING);
+    const { fit } = solvedFixture().record;
+    const none = report(
+      solvedFixture({ companions: [], record: { fit: { ...fit, usable: false } } }),
+      NOTHING,
+    );
+    expect(none).not.toContain('must not be cited');
     expect(none).toContain('# Vellamo: no companion');
     expect(none).toContain('show no companion that clears the thresholds');
-    const { fit } = solvedFixture().record;
     const failed = report(
       solvedFixture({ record: { fit: { ...fit, status: 'failed', usable: false } } }),
       NOTHING,

@@ -2,7 +2,7 @@ import { mkdtemp, rm, writeFile } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { describe, expect, it } from 'vitest';
-import { UsageError } from '../../src/errors.js';
+import { UsageError, type InputIssue } from '../../src/errors.js';
 import {
   caseFromTables,
   checkInstrumentChoices,
@@ -145,9 +145,20 @@ mock:
   it('holds its instruments against those of the tables', () => {
     const velocities = combineTables([read('2459000.5 1 1\n2459001.5 2 1\n', {}, 'north.csv')]);
     const named = (name: string): ReturnType<typeof caseOf> =>
-      caseOf(`target: x\ntables: [north.csv]\ninstruments: { ${name}: { jitter: 1 m/s } }\n`);
-    expect(() => { checkInstrumentChoices(named('north'), velocities); }).not.toThrow(); // prettier-ignore
-    expect(issuesOf(() => { checkInstrumentChoices(named('nort'), velocities); })[0]).toMatchObject({ code: 'unknown-instrument', hint: 'did you mean "north"?' }); // prettier-ignore
+      caseOf(`target: x\ntables: [north.csv]\ninstruments:\n  ${name}: { jitter: 1 m/s }\n`);
+    const issueOf = (theCase: ReturnType<typeof caseOf>): InputIssue =>
+      issuesOf(() => {
+        checkInstrumentChoices(theCase, velocities);
+      })[0]!;
+    expect(() => {
+      checkInstrumentChoices(named('north'), velocities);
+    }).not.toThrow();
+    // The name stands in the fourth line of the text, behind two blanks.
+    const unknown = { code: 'unknown-instrument', line: 4, column: 3, field: 'instruments.nort' };
+    expect(issueOf(named('nort'))).toMatchObject({ ...unknown, hint: 'did you mean "north"?' });
+    // Options of the command line make a changed copy of the case.
+    expect(issueOf({ ...named('nort'), drift: 'none' })).toMatchObject(unknown);
+    expect(issueOf(named('harbour'))).toMatchObject({ line: 4, hint: 'allowed here: north' });
   });
 });
 

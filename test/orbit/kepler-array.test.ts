@@ -3,7 +3,7 @@ import { describe, expect, it } from 'vitest';
 import { ModelDomainError } from '../../src/errors.js';
 import { solveKeplerArray } from '../../src/orbit/index.js';
 import { expectUlps, expectWithin } from '../support/expect-within.js';
-import { KEPLER_FILES, keplerRows } from '../support/kepler-reference.js';
+import { KEPLER_FILES, keplerGrid, keplerRows } from '../support/kepler-reference.js';
 
 const SEED = 20261201;
 /** Below and above the count from which the finer index is used. */
@@ -33,6 +33,31 @@ describe('solveKeplerArray', () => {
       }
     });
   }
+
+  it('matches 50-digit values on a grid to the tolerance of each row, alone and among many (reference/kepler/grid.json)', () => {
+    const { rows } = keplerGrid();
+    for (const eccentricity of new Set(rows.map((row) => row.eccentricity))) {
+      const same = rows.filter((row) => row.eccentricity === eccentricity);
+      expect(same).toHaveLength(20);
+      for (const repeats of [1, 40]) {
+        const means = Array.from({ length: repeats }, () => same.map((row) => row.meanAnomalyRad)).flat();
+        const { sinE, cosE } = solved(means, eccentricity);
+        for (const [i, mean] of means.entries()) {
+          const row = same[i % same.length]!;
+          const why = `E is good to 8 roundings, stretched by dE/dM (e = ${eccentricity}, M = ${mean})`;
+          const bound = { abs: row.toleranceRad, unit: '1', why };
+          expectWithin(sinE[i]!, row.sinE, bound);
+          expectWithin(cosE[i]!, row.cosE, bound);
+          // The angle itself, from the turn of the reference: sines near 1 would hide an error in E.
+          const off = Math.atan2(
+            sinE[i]! * row.cosE - cosE[i]! * row.sinE,
+            cosE[i]! * row.cosE + sinE[i]! * row.sinE,
+          );
+          expectWithin(off, 0, { ...bound, unit: 'rad' });
+        }
+      }
+    }
+  });
 
   it('satisfies the equation for scattered M and e, in few and in many points (property)', () => {
     const eccentricities = fc.oneof(

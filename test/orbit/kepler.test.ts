@@ -11,7 +11,7 @@ import {
   trueFromEccentricAnomaly,
 } from '../../src/orbit/index.js';
 import { expectUlps, expectWithin } from '../support/expect-within.js';
-import { KEPLER_FILES, keplerRows } from '../support/kepler-reference.js';
+import { KEPLER_FILES, keplerGrid, keplerRows } from '../support/kepler-reference.js';
 
 const SEED = 20261201;
 
@@ -25,16 +25,30 @@ describe('solveKepler', () => {
     });
   }
 
-  it('gives the worked values of Meeus, Astronomical Algorithms, 2nd ed., ch. 30 (digits remembered, confirmed with mpmath)', () => {
-    // [e, M deg, E deg as printed]
-    const printed = [
-      [0.1, 5, 5.554589], [0.2, 5, 6.246908], [0.3, 5, 7.13496], [0.4, 5, 8.313903], [0.5, 5, 9.950063],
-      [0.6, 5, 12.356653], [0.7, 5, 16.16799], [0.8, 5, 22.656579], [0.9, 5, 33.344447], [0.99, 5, 45.361023],
-      [0.99, 1, 24.725822], [0.99, 2, 32.361007], [0.99, 33, 89.722155], [0.999, 7, 52.270261],
-    ] as const; // prettier-ignore
-    for (const [eccentricity, meanDeg, wantDeg] of printed) {
-      const gotDeg = solveKepler(meanDeg * RAD_PER_DEG, eccentricity) / RAD_PER_DEG;
-      expectWithin(gotDeg, wantDeg, {
+  it('matches 50-digit values on a grid to the tolerance of each row, true anomaly to four times that (reference/kepler/grid.json)', () => {
+    const { rows } = keplerGrid();
+    expect(rows).toHaveLength(260);
+    for (const row of rows) {
+      const { eccentricity, meanAnomalyRad, toleranceRad } = row;
+      const why = `8 roundings, stretched by dE/dM (e = ${eccentricity}, M = ${meanAnomalyRad})`;
+      const bound = { abs: toleranceRad, unit: 'rad', why };
+      expectWithin(solveKepler(meanAnomalyRad, eccentricity), row.eccentricAnomalyRad, bound);
+      const wider = { abs: 4 * toleranceRad, unit: 'rad', why };
+      expectWithin(trueAnomaly(meanAnomalyRad, eccentricity), row.trueAnomalyRad, wider);
+    }
+  });
+
+  it('gives the worked values of Meeus, Astronomical Algorithms, 2nd ed. 1998, ch. 30 (digits remembered, confirmed with mpmath)', () => {
+    const { printed } = keplerGrid();
+    expect(printed).toHaveLength(15);
+    for (const { eccentricity, meanAnomalyDeg, eccentricAnomalyDeg, printedDeg } of printed) {
+      const gotDeg = solveKepler(meanAnomalyDeg * RAD_PER_DEG, eccentricity) / RAD_PER_DEG;
+      expectWithin(gotDeg, eccentricAnomalyDeg, {
+        abs: 1e-12,
+        unit: 'deg',
+        why: 'M in radians is rounded, and dE/dM reaches 25 here; measured 1.4e-14',
+      });
+      expectWithin(gotDeg, printedDeg, {
         abs: 1e-6,
         unit: 'deg',
         why: 'printed to six decimals, some cut, some rounded',

@@ -23,7 +23,7 @@ export function fixed(value: number, unit: string): Quantity {
 
 const DERIVED: Partial<Record<DerivedKey, Quantity>> = {
   semiMajorAxis: quantity(0.2312, 0.0025, 'au'),
-  minimumMass: { value: 0.7123, sigma: 0.0219, lower: 0.6911, upper: 0.735, unit: 'M_jup' },
+  minimumMass: { value: 0.7123, sigma: 0.0219, lower: 0.6911, upper: 0.738, unit: 'M_jup' },
   massFunction: quantity(2.01e-10, 0.11e-10, 'M_sun'),
 };
 

@@ -1,0 +1,42 @@
+/** All files of a dossier, ready to be written. */
+import type { Solved } from '../solving/types.js';
+import { elementsTable } from './elements-table.js';
+import { solutionJson } from './json.js';
+import { modelTable } from './model-table.js';
+import { report } from './report.js';
+import { residualsTable } from './residuals-table.js';
+import { runJson, type RunFacts } from './run-record.js';
+import type { DossierFile } from './write-dossier.js';
+
+/** Texts and tables by name; a new output format is one file and its line here. */
+const WRITERS: readonly (readonly [string, (solved: Solved) => string])[] = [
+  ['solution.json', ({ record }) => solutionJson(record)],
+  ['elements.csv', ({ record }) => elementsTable(record)],
+  ['residuals.csv', residualsTable],
+  ['model.csv', modelTable],
+];
+
+/**
+ * @param charts - finished charts by their bare names; they go to the folder `charts`
+ * @param run - facts that differ between runs; called last, so that the duration covers the rest
+ */
+export function dossierFiles(
+  solved: Solved,
+  charts: readonly { readonly name: string; readonly bytes: Uint8Array; readonly caption: string }[],
+  run: () => RunFacts,
+): DossierFile[] {
+  const files: DossierFile[] = WRITERS.map(([name, write]) => ({ name, bytes: write(solved) }));
+  for (const chart of charts) files.push({ name: `charts/${chart.name}`, bytes: chart.bytes });
+  const names = [...files.map((file) => file.name), 'report.md', 'run.json'];
+  const shown = charts.map((chart) => ({ path: `charts/${chart.name}`, caption: chart.caption }));
+  files.push({ name: 'report.md', bytes: report(solved, { charts: shown, files: names }) });
+  files.push({
+    name: 'run.json',
+    bytes: runJson(
+      run(),
+      solved.record.provenance.version,
+      names.filter((name) => name !== 'run.json'),
+    ),
+  });
+  return files;
+}

@@ -1,0 +1,16 @@
+// The dossier: what people receive.
+export { dossierFiles } from './dossier-files.js';
+export { solutionJson, stableJson } from './json.js';
+export { report } from './report.js';
+export { elementsTable } from './elements-table.js';
+export { residualsTable } from './residuals-table.js';
+export { modelGrid, modelTable, type ModelGrid } from './model-table.js';
+export { runJson, type RunFacts } from './run-record.js';
+
+// Writing.
+export { checkDestination, writeDossier, type DossierFile, type WriteChoices } from './write-dossier.js';
+export { writeFiles } from './write-files.js';
+
+// Numbers and labels as they are shown.
+export { formatProbability, formatQuantity, isUpperLimit, roundedParts, significant } from './numbers.js';
+export { csvLines, csvText, escapeMarkdown, fileNameFrom, markdownCode, plainLabel } from './escape.js';

@@ -1,0 +1,22 @@
+/** Zero point, jitter and scatter of each instrument. */
+import { escapeMarkdown } from '../escape.js';
+import { formatQuantity, significant } from '../numbers.js';
+import { markdownTable, type ReportSection } from './section.js';
+
+export const instruments: ReportSection = {
+  heading: 'Instruments',
+  blocks: ({ record }) => [
+    'Each instrument has its own zero point and its own jitter, a noise added in quadrature to the errors of its table. Velocities in m/s.',
+    markdownTable(
+      ['instrument', 'velocities', 'zero point', 'jitter', 'rms of residuals'],
+      record.velocity.instruments.map((instrument) => [
+        escapeMarkdown(instrument.name),
+        String(instrument.count),
+        formatQuantity(instrument.zeroPoint, 'markdown', { withUnit: false }),
+        formatQuantity(instrument.jitter, 'markdown', { withUnit: false, zeroBounded: true }),
+        significant(instrument.rms, 3),
+      ]),
+      [1, 2, 3, 4],
+    ),
+  ],
+};

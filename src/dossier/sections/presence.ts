@@ -1,0 +1,134 @@
+/** The companions and their orbits, in sentences and in one table each. */
+import type { CompanionRecord, Quantity, SolutionRecord, Solved } from '../../solving/types.js';
+import { escapeMarkdown } from '../escape.js';
+import { formatProbability, formatQuantity, isUpperLimit, significant } from '../numbers.js';
+import {
+  counted,
+  DERIVED_ORDER,
+  DERIVED_TITLES,
+  ELEMENT_ORDER,
+  ELEMENT_TITLES,
+  type Title,
+} from '../titles.js';
+import { verdictOf } from '../verdict.js';
+import { chartBlocks, markdownTable, type ReportSection } from './section.js';
+
+function shown(quantity: Quantity, title?: Title): string {
+  return formatQuantity(quantity, 'markdown', { zeroBounded: title?.zeroBounded === true });
+}
+
+function overview({ record, velocities }: Solved): string {
+  const first = velocities.timesBjdTdb[0] ?? record.epoch;
+  const last = velocities.timesBjdTdb[velocities.count - 1] ?? first;
+  const verdict = {
+    companions: `show ${counted(record.companions.length, 'companion')}`,
+    nothing: 'show no companion that clears the thresholds of this search',
+    unusable: 'gave no usable solution; what follows is where the search stopped and must not be cited',
+  }[verdictOf(record)];
+  return (
+    `The ${velocities.count} velocities of ${escapeMarkdown(record.target)}, taken with ` +
+    `${counted(velocities.instruments.length, 'instrument')} over ${significant(last - first, 5)} d ` +
+    `(from ${first.toFixed(2)} to ${last.toFixed(2)}, ${record.timeScale}), ${verdict}.`
+  );
+}
+
+function orbitSentence(companion: CompanionRecord, star: SolutionRecord['star']): string {
+  const { elements, derived } = companion;
+  const shape = companion.circular
+    ? 'on a circular orbit'
+    : isUpperLimit(elements.eccentricity)
+      ? `on an orbit whose eccentricity is ${shown(elements.eccentricity, { words: '', zeroBounded: true })}`
+      : `on an eccentric orbit, e = ${shown(elements.eccentricity)}`;
+  const heavy = derived.mass.value === null ? derived.minimumMass : derived.mass;
+  const massName = derived.mass.value === null ? 'minimum mass (m sin i)' : 'mass';
+  const mass =
+    heavy.value === null
+      ? `Its ${massName} is not known${heavy.why === undefined ? '' : `: ${escapeMarkdown(heavy.why)}`}.`
+      : `Its ${massName} is ${shown(heavy)} for a star of ${shown(star.mass)}.`;
+  return (
+    `Companion ${companion.letter} goes round in ${shown(elements.period)} ${shape}, and moves the star ` +
+    `with a semi-amplitude of ${shown(elements.semiAmplitude)}. ${mass}`
+  );
+}
+
+function quantitiesTable(companion: CompanionRecord): string {
+  const rows = [
+    ...ELEMENT_ORDER.map((key) => [
+      ELEMENT_TITLES[key].words,
+      shown(companion.elements[key], ELEMENT_TITLES[key]),
+    ]),
+    ...DERIVED_ORDER.filter((key) => companion.derived[key].value !== null).map((key) => [
+      DERIVED_TITLES[key].words,
+      shown(companion.derived[key], DERIVED_TITLES[key]),
+    ]),
+  ];
+  return markdownTable(['quantity', 'value'], rows);
+}
+
+/** What could not be derived, with the reason said once for all the quantities that share it. */
+function missing(companion: CompanionRecord): string[] {
+  const byReason = new Map<string, string[]>();
+  for (const key of DERIVED_ORDER) {
+    const quantity = companion.derived[key];
+    if (quantity.value !== null) continue;
+    const reason = quantity.why ?? 'no reason recorded';
+    byReason.set(reason, [...(byReason.get(reason) ?? []), DERIVED_TITLES[key].words]);
+  }
+  return [...byReason].map(
+    ([reason, names]) => `Not derived (${escapeMarkdown(reason)}): ${names.join('; ')}.`,
+  );
+}
+
+function driftSentence({ velocity }: SolutionRecord): string[] {
+  const parts: string[] = [];
+  if (velocity.slope.value !== null && velocity.slope.fixed !== true)
+    parts.push(`a slope of ${shown(velocity.slope)}`);
+  if (velocity.curvature.value !== null && velocity.curvature.fixed !== true)
+    parts.push(`a curvature of ${shown(velocity.curvature)}`);
+  if (parts.length === 0) return ['No drift of the mean velocity is part of the model.'];
+  return [
+    `The mean velocity drifts, with ${parts.join(' and ')}; this may be a companion with a period longer than the data.`,
+  ];
+}
+
+function candidateSentences(record: SolutionRecord): string[] {
+  return record.candidates.map(
+    (candidate) =>
+      `A further signal at ${significant(candidate.period, 6)} d (semi-amplitude ${significant(candidate.semiAmplitude, 3)} m/s, ` +
+      `false-alarm probability ${formatProbability(candidate.falseAlarmProbability, 'markdown')}, ` +
+      `BIC better by ${significant(candidate.deltaBic, 3)}) is a candidate only: it clears the weaker thresholds, not the stronger, and is not part of the model.`,
+  );
+}
+
+function neighbourSentences(record: SolutionRecord): string[] {
+  return record.neighbours.map(({ letters, periodRatio, nearRatio, mutualHillSpacing }) => {
+    const near = nearRatio === null ? '' : `, close to ${nearRatio}`;
+    const spacing =
+      mutualHillSpacing.value === null
+        ? ''
+        : ` They are ${shown({ ...mutualHillSpacing, unit: '' })} mutual Hill radii apart.`;
+    return `The periods of ${letters[0]} and ${letters[1]} stand as ${significant(periodRatio, 5)} to 1${near}.${spacing}`;
+  });
+}
+
+export const presence: ReportSection = {
+  heading: 'What is there',
+  blocks: (solved, context) => {
+    const { record } = solved;
+    return [
+      overview(solved),
+      ...chartBlocks(context, /^velocities$/),
+      ...record.companions.flatMap((companion) => [
+        `### Companion ${companion.letter}`,
+        orbitSentence(companion, record.star),
+        quantitiesTable(companion),
+        ...missing(companion),
+        ...chartBlocks(context, new RegExp(`^(folded|orbit)-${companion.letter}$`)),
+      ]),
+      ...driftSentence(record),
+      ...candidateSentences(record),
+      ...neighbourSentences(record),
+      ...chartBlocks(context, /^orbits$/),
+    ];
+  },
+};
