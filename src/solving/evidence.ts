@@ -5,7 +5,7 @@ import { reportedValues } from './elements-report.js';
 import type { Explorer, PlannedFit } from './explorer.js';
 import { powerOfGain } from './false-alarm.js';
 import { evidenceFromFits } from './find-companions.js';
-import { permutationFalseAlarm } from './permutations.js';
+import { permutationFalseAlarm, permutedMaxima } from './permutations.js';
 import { centralInterval } from './quantities.js';
 import type { Evidence } from './types.js';
 
@@ -33,14 +33,12 @@ export function evidenceOf(
   );
   const circularGain =
     variants.circular === null ? 0 : variants.circular.fit.logLikelihood - base.fit.logLikelihood;
+  const { permutations, seed } = options;
   const permuted =
-    options.permutations > 0
+    permutations > 0
       ? permutationFalseAlarm(
-          explorer,
-          base,
+          permutedMaxima(explorer, base, permutations, seed),
           powerOfGain(circularGain, n),
-          options.permutations,
-          options.seed,
         )
       : null;
   return {

@@ -12,17 +12,16 @@ export interface PermutationResult {
 }
 
 /**
- * Share of permutations whose highest periodogram peak reaches `power`, (exceeding + 1)/(count + 1).
+ * Highest periodogram peak of each of `count` permutations of what the model `base` leaves.
  *
- * Residuals are exchanged in units of their own error, so that the weights stay with the times.
+ * Residuals are exchanged within instruments and in units of their own error, so that the weights stay with the times.
  */
-export function permutationFalseAlarm(
+export function permutedMaxima(
   explorer: Explorer,
   base: PlannedFit,
-  power: number,
   count: number,
   seed: number,
-): PermutationResult {
+): Float64Array {
   const background = backgroundOf(base.fit);
   const { instrumentOf, instrumentCount } = explorer.builder.data;
   const random = RandomStream.fromSeed(seed, 50);
@@ -34,8 +33,7 @@ export function permutationFalseAlarm(
   );
   const shuffled = new Float64Array(n);
   const powers = new Float64Array(explorer.range.grid.count);
-  let exceeding = 0;
-  for (let turn = 0; turn < count; turn++) {
+  return Float64Array.from({ length: count }, () => {
     for (const group of groups) {
       const order = Uint32Array.from(group);
       random.shuffle(order);
@@ -49,7 +47,13 @@ export function permutationFalseAlarm(
     periodogram.powerOf(background, again.residuals, again.chiSquare, powers);
     let highest = 0;
     for (const value of powers) if (value > highest) highest = value;
-    if (highest >= power) exceeding++;
-  }
+    return highest;
+  });
+}
+
+/** Share of permutations that reach `power`, (exceeding + 1)/(count + 1). */
+export function permutationFalseAlarm(maxima: Float64Array, power: number): PermutationResult {
+  const count = maxima.length;
+  const exceeding = maxima.reduce((sum, highest) => sum + (highest >= power ? 1 : 0), 0);
   return { probability: (exceeding + 1) / (count + 1), count, exceeding };
 }

@@ -1,6 +1,6 @@
 /** Periods in the data, without a solution: one stage of the search and the window function. */
 import type { Case, VelocitySet } from '../observations/types.js';
-import { permutationFalseAlarm } from './permutations.js';
+import { permutationFalseAlarm, permutedMaxima } from './permutations.js';
 import { explorerFor } from './prepare.js';
 import { stageRecord } from './search-record.js';
 import { requireSolvable } from './solvable.js';
@@ -53,14 +53,14 @@ export function searchPeriods(
   );
   const { permutations, seed } = options;
   options.onProgress?.('false-alarm probabilities', 0.6);
+  const maxima = permutations > 0 ? permutedMaxima(explorer, base, permutations, seed) : null;
   const peaks =
-    permutations > 0
-      ? stage.peaks.map((peak) => ({
+    maxima === null
+      ? stage.peaks
+      : stage.peaks.map((peak) => ({
           ...peak,
-          falseAlarmProbability: permutationFalseAlarm(explorer, base, peak.power, permutations, seed)
-            .probability,
-        }))
-      : stage.peaks;
+          falseAlarmProbability: permutationFalseAlarm(maxima, peak.power).probability,
+        }));
   const drift = ['', ', and a linear drift', ', and a quadratic drift'][base.plan.drift]!;
   return {
     stage: { ...stage, peaks },

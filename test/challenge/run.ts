@@ -1,13 +1,15 @@
-/** Measures what the solver misses: `npm run challenge -- [part of a kind's name] [sets per kind]`. */
+/** Measures what the solver misses: `npm run challenge -- [part of a kind's name] [sets per kind] [--seed=N]`. */
 import { spawn } from 'node:child_process';
 import { fileURLToPath } from 'node:url';
 import { evaluateSet, type SetResult } from './evaluate.js';
 import { KINDS } from './kinds.js';
 
-const BASE_SEED = 20261201;
+const DEFAULT_SEED = 20261201;
 const PROCESSES = 2;
 
 const [wanted = '', sets = ''] = process.argv.slice(2).filter((word) => !word.startsWith('--'));
+const seedWord = process.argv.find((word) => word.startsWith('--seed='));
+const baseSeed = seedWord === undefined ? DEFAULT_SEED : Number(seedWord.slice('--seed='.length));
 const part = process.argv.find((word) => word.startsWith('--part='))?.slice('--part='.length);
 const chosen = KINDS.filter((kind) => kind.name.includes(wanted));
 const jobs = chosen.flatMap((kind) =>
@@ -20,7 +22,7 @@ const jobs = chosen.flatMap((kind) =>
 if (part !== undefined) {
   jobs.forEach(({ kind, index }, job) => {
     if (job % PROCESSES === Number(part))
-      process.stdout.write(`${JSON.stringify(evaluateSet(kind, index, BASE_SEED))}\n`);
+      process.stdout.write(`${JSON.stringify(evaluateSet(kind, index, baseSeed))}\n`);
   });
 } else {
   report(await runParts());
@@ -30,9 +32,13 @@ async function runParts(): Promise<SetResult[]> {
   const script = fileURLToPath(import.meta.url);
   const outputs = await Promise.all(
     Array.from({ length: PROCESSES }, (_, p) => {
-      const child = spawn(process.execPath, ['--import', 'tsx', script, wanted, sets, `--part=${p}`], {
-        stdio: ['ignore', 'pipe', 'inherit'],
-      });
+      const child = spawn(
+        process.execPath,
+        ['--import', 'tsx', script, wanted, sets, `--part=${p}`, `--seed=${baseSeed}`],
+        {
+          stdio: ['ignore', 'pipe', 'inherit'],
+        },
+      );
       let text = '';
       child.stdout.on('data', (chunk: Buffer) => (text += chunk.toString()));
       return new Promise<string>((resolve, reject) => {

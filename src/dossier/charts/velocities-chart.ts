@@ -32,6 +32,8 @@ export function velocitiesChart(solved: Solved): ChartDrawing {
   const timeRange = { min: first + fromFirst.min, max: first + fromFirst.max };
   const offset = timeOffset(first, last);
   const curve = sampleModel(best, timeRange.min, timeRange.max);
+  // Dates that were taken as BJD_TDB without being it keep the name of their own scale.
+  const scale = velocities.timeScale === 'unknown' ? 'date' : velocities.timeScale.replace('_', ' ');
   const x = times.map((time) => time - offset);
   const y = velocities.velocitiesMps.map(
     (value, row) => value - (best.zeroPointsMps[velocities.instrumentOf[row]!] ?? 0),
@@ -69,7 +71,7 @@ export function velocitiesChart(solved: Solved): ChartDrawing {
       ...commonOptions(),
       scales: {
         x: axis({
-          title: offset === 0 ? 'BJD TDB (d)' : `BJD TDB \u2212 ${fixedText(offset, 0)} (d)`,
+          title: offset === 0 ? `${scale} (d)` : `${scale} \u2212 ${fixedText(offset, 0)} (d)`,
           min: timeRange.min - offset,
           max: timeRange.max - offset,
           position: 'bottom',

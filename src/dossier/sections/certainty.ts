@@ -1,5 +1,5 @@
 /** Evidence for each companion, for its eccentricity, and where the uncertainties come from. */
-import type { CompanionRecord, Evidence, SolutionRecord } from '../../solving/types.js';
+import type { CompanionRecord, Evidence, SolutionRecord, Solved } from '../../solving/types.js';
 import { escapeMarkdown } from '../escape.js';
 import { formatProbability, formatQuantity, significant, typographicMinus } from '../numbers.js';
 import { chartBlocks, type ReportSection } from './section.js';
@@ -71,10 +71,24 @@ function uncertaintyParagraph({ posterior }: SolutionRecord): string {
   );
 }
 
+/** What the search left behind: the highest peak of the last periodogram. */
+function leftoverParagraph(stages: Solved['stages']): string[] {
+  const last = stages.at(-1);
+  const peak = last?.peaks[0];
+  if (last === undefined || peak === undefined) return [];
+  const model = last.companionsFitted === 0 ? 'no companion' : 'these companions';
+  return [
+    `With ${model} in the model the highest peak that is left is at ${significant(peak.periodDays, 5)} d, with a false-alarm probability of ` +
+      `${probability(peak.falseAlarmProbability)}. A companion is fitted when its false-alarm probability is below 0.1 % and it improves the BIC by more than 10; ` +
+      'one that clears only 1 % and 5 is listed as a candidate.',
+  ];
+}
+
 export const certainty: ReportSection = {
   heading: 'How sure this is',
-  blocks: ({ record }, context) => [
+  blocks: ({ record, stages }, context) => [
     ...record.companions.map(evidenceParagraph),
+    ...leftoverParagraph(stages),
     fitParagraph(record),
     uncertaintyParagraph(record),
     'Intervals are central and hold 68.3 % of the probability; sides that differ by less than 10 % of their mean are written as one ± with that mean ' +
