@@ -52,7 +52,7 @@ export function requireFinite(what: string, values: Float64Array): void {
     throw new Error(`${what}: not finite, so its time means nothing`);
 }
 
-/** `12.3 ms; 4.5 times as fast as X (target 3)`, with a mark where the target is missed. */
+/** `4.68, target >= 3: met`, so that a missed target is seen. */
 export function verdict(ratio: number, target: number, better: 'higher' | 'lower'): string {
   const met = better === 'higher' ? ratio >= target : ratio <= target;
   return `${ratio.toFixed(2)}, target ${better === 'higher' ? '>=' : '<='} ${target}: ${met ? 'met' : 'MISSED'}`;

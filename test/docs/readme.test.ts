@@ -7,6 +7,7 @@ import {
   mkdirSync,
   mkdtempSync,
   readFileSync,
+  readdirSync,
   rmSync,
   writeFileSync,
 } from 'node:fs';
@@ -118,6 +119,21 @@ describe('the documents', () => {
     );
     const own = ['ci', 'install', 'link', 'pack', 'run'];
     expect(named.filter((name) => !own.includes(name) && !(name in scripts))).toEqual([]);
+  });
+
+  it('explain every reference that code cites by key', () => {
+    const src = join(ROOT, 'src');
+    const texts = readdirSync(src, { recursive: true, encoding: 'utf8' })
+      .filter((path) => path.endsWith('.ts'))
+      .map((path) => readFileSync(join(src, path), 'utf8'));
+    const keys = texts.flatMap((text) =>
+      [...text.matchAll(/\[((?:[A-Z][A-Za-z]+[12]\d{3}[a-z]?(?:, )?)+)\]/g)].flatMap((match) =>
+        match[1]!.split(', '),
+      ),
+    );
+    expect(keys.length).toBeGreaterThan(0);
+    const references = read('DEVELOPERS.md').split('\n## References\n')[1] ?? '';
+    expect([...new Set(keys)].filter((key) => !references.includes(`- [${key}] `))).toEqual([]);
   });
 
   it('tell the test command that the continuous check runs', () => {
