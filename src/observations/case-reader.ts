@@ -150,7 +150,12 @@ function toInstruments(
   const choices = Object.create(null) as Record<string, InstrumentChoice>;
   const places = new Map<string, Place>();
   for (const [name, entry] of Object.entries(entries)) {
-    choices[name] = { zeroPointMps: entry['zero-point'] ?? null, jitterMps: entry.jitter ?? null };
+    const zeroPoint = entry['zero-point'] ?? null;
+    // The schema refuses a range here.
+    choices[name] = {
+      zeroPointMps: zeroPoint?.kind === 'range' ? null : zeroPoint,
+      jitterMps: entry.jitter ?? null,
+    };
     places.set(name, yaml.placeOfKey(['instruments'], name));
   }
   instrumentPlaces.set(choices, places);

@@ -190,6 +190,14 @@ interface InstrumentEntry {
 const instrument: z.ZodType<InstrumentEntry> = mapping({
   'zero-point': choice('velocity', ANY).optional(),
   jitter: choice('velocity', NOT_NEGATIVE).optional(),
+}).superRefine((choices, context) => {
+  if (choices['zero-point']?.kind === 'range')
+    complain(
+      context,
+      'a zero point cannot be confined to a range',
+      'a value fixes it, value +- sigma is a prior',
+      ['zero-point'],
+    );
 });
 
 interface SearchEntry {

@@ -119,7 +119,8 @@ export interface CompanionChoice {
 }
 
 export interface InstrumentChoice {
-  readonly zeroPointMps: ElementChoice | null;
+  /** A zero point cannot be confined to a range. */
+  readonly zeroPointMps: Exclude<ElementChoice, { readonly kind: 'range' }> | null;
   readonly jitterMps: ElementChoice | null;
 }
 

@@ -2,7 +2,7 @@
 import { DAYS_PER_YEAR, TWO_PI } from '../orbit/constants.js';
 import { conjunctionDelayDays } from '../orbit/conversions.js';
 import type { OrbitElements } from '../orbit/elements.js';
-import { portableOf } from './model-builder.js';
+import { portableOf, type PortablePoint } from './model-builder.js';
 import type { RelativeElements } from './parametrisations/parametrisation.js';
 import type { VelocityProblem } from './problem.js';
 import type { ModelPoint } from './model-structure.js';
@@ -29,7 +29,14 @@ export function reportedValues(
   point: ModelPoint,
   references: readonly { readonly periastron: number; readonly conjunction: number }[],
 ): ReportedValues {
-  const portable = portableOf(problem, point);
+  return reportedFromPortable(portableOf(problem, point), references);
+}
+
+/** The same from a point that does not depend on a parametrisation. */
+export function reportedFromPortable(
+  portable: PortablePoint,
+  references: readonly { readonly periastron: number; readonly conjunction: number }[],
+): ReportedValues {
   return {
     companions: portable.companions.map((companion, c) => elementValues(companion, references[c]!)),
     zeroPointsMps: portable.zeroPointsMps,

@@ -1,5 +1,5 @@
 /** Builds problems from what a case allows, and carries points from one model to another. */
-import type { Case, CompanionChoice, ElementChoice } from '../observations/types.js';
+import type { Case, CompanionChoice, ElementChoice, InstrumentChoice } from '../observations/types.js';
 import { ORBIT_COORDINATES } from '../signals/keplerian.js';
 import { VelocityTerm, type DriftDegree, type VelocityData } from '../signals/velocity-term.js';
 import type { ModelFit } from './fit-model.js';
@@ -39,7 +39,7 @@ export class ModelBuilder {
   readonly term: VelocityTerm;
   readonly data: VelocityData;
   readonly epochBjdTdb: number;
-  readonly #zeroPoints: readonly (ElementChoice | null)[];
+  readonly #zeroPoints: readonly InstrumentChoice['zeroPointMps'][];
   readonly #jitters: readonly JitterSetting[];
 
   constructor(data: VelocityData, instruments: readonly string[], theCase: Case, epochBjdTdb: number) {
@@ -113,16 +113,33 @@ export class ModelBuilder {
 }
 
 export function portableOf(problem: VelocityProblem, point: ModelPoint): PortablePoint {
-  const coordinates = problem.coordinatesAt(point.parameters);
-  const linear = problem.linearAt(point.parameters);
-  const instruments = problem.data.instrumentCount;
+  return portableFrom(
+    problem.coordinatesAt(point.parameters),
+    problem.structure.companions.length,
+    problem.linearAt(point.parameters),
+    point.jittersMps,
+  );
+}
+
+/**
+ * @param coordinates - (5 x companions), orbit coordinates
+ * @param linear - zero points, then slope and curvature as far as there are any
+ * @param jittersMps - one per instrument, which also says how many zero points there are
+ */
+export function portableFrom(
+  coordinates: Float64Array,
+  companions: number,
+  linear: Float64Array,
+  jittersMps: Float64Array,
+): PortablePoint {
+  const instruments = jittersMps.length;
   return {
-    companions: problem.structure.companions.map((_, c) =>
+    companions: Array.from({ length: companions }, (_, c) =>
       coordinatesToElements(coordinates, c * ORBIT_COORDINATES),
     ),
     zeroPointsMps: linear.slice(0, instruments),
     drift: [linear[instruments] ?? 0, linear[instruments + 1] ?? 0],
-    jittersMps: point.jittersMps,
+    jittersMps,
   };
 }
 

@@ -1,5 +1,5 @@
 /** What a model consists of, and a point of its parameter space. */
-import type { ElementChoice } from '../observations/types.js';
+import type { InstrumentChoice } from '../observations/types.js';
 import type { DriftDegree } from '../signals/velocity-term.js';
 import type { Parametrisation } from './parametrisations/parametrisation.js';
 
@@ -15,7 +15,7 @@ export interface ModelStructure {
   readonly companions: readonly Parametrisation[];
   readonly drift: DriftDegree;
   /** One per instrument; `null` leaves the zero point free. */
-  readonly zeroPoints: readonly (ElementChoice | null)[];
+  readonly zeroPoints: readonly InstrumentChoice['zeroPointMps'][];
   readonly jitters: readonly JitterSetting[];
 }
 

@@ -59,13 +59,6 @@ export class VelocityProblem implements LeastSquaresProblem {
         this.#linearFixed[l] = choice.value;
       } else {
         if (choice?.kind === 'prior') priors.push({ column: at, centre: choice.value, sigma: choice.sigma });
-        // A range is taken as a uniform density of the same mean and variance would be: only its centre and width matter.
-        if (choice?.kind === 'range')
-          priors.push({
-            column: at,
-            centre: 0.5 * (choice.low + choice.high),
-            sigma: (choice.high - choice.low) / Math.sqrt(12),
-          });
         columns.push(at++);
       }
     }

@@ -69,8 +69,9 @@ export function rivalsOf(
     const apart = (period: number): boolean => Math.abs(1 / found.periodDays - 1 / period) > 0.5 * resolution;
     if (!apart(companion.periodDays) || !rivals.every((rival) => apart(rival.period))) continue;
     if (!explorer.isInRange(refit)) continue;
-    if (refit.fit.logDensity > best.fit.logDensity + 1e-3 && refit.fit.bic < (better ?? best).fit.bic)
-      better = refit;
+    const isBetter =
+      refit.fit.logDensity > best.fit.logDensity + 1e-3 && refit.fit.bic < (better ?? best).fit.bic;
+    if (isBetter && wasAskedFor(explorer, found.periodDays)) better = refit;
     rivals.push({
       period: found.periodDays,
       kind: trial.kind,
@@ -83,6 +84,12 @@ export function rivalsOf(
     .sort((a, b) => b.deltaLogLikelihood - a.deltaLogLikelihood)
     .slice(0, LARGEST_COUNT);
   return { rivals: kept, tried, better };
+}
+
+/** Rivals outside the searched range are told, but none of them becomes the solution. */
+function wasAskedFor(explorer: Explorer, periodDays: number): boolean {
+  const highest = explorer.theCase.periodRangeDays.high ?? Infinity;
+  return periodDays >= explorer.range.shortestPeriodDays && periodDays <= highest;
 }
 
 /** The best sinusoid within a resolution element of a frequency and, for eccentric companions, the best shape there. */

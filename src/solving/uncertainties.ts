@@ -112,12 +112,24 @@ export function elementQuantity(
   if (circular && key === 'argumentOfPeriastron') return fixedQuantity(90, unit);
   const isTime = key === 'timeOfPeriastron' || key === 'timeOfInferiorConjunction';
   const shift = isTime ? epochBjdTdb : 0;
-  const drawn = Float64Array.from(sampled.draws, (draw) => shift + draw.companions[index]![key]);
+  const drawn = Float64Array.from(sampled.draws, (draw) => draw.companions[index]![key]);
+  // Judged before the epoch is added: a date of a binary may be known to less than 1e-12 of a Julian date.
   const spread =
     drawn.length > 0 ? Math.max(...sample(drawn).map((value) => Math.abs(value - drawn[0]!))) : 1;
-  if (drawn.length > 0 && spread <= 1e-12 * Math.abs(drawn[0]!))
-    return fixedQuantity(shift + best[key], unit);
-  return centralInterval(shift + best[key], drawn, unit, key === 'argumentOfPeriastron' ? 360 : 0);
+  if (drawn.length > 0 && spread <= 1e-12 * Math.max(Math.abs(drawn[0]!), isTime ? best.period : 0))
+    return fixedQuantity(asWritten(shift + best[key]), unit);
+  const cycle = key === 'argumentOfPeriastron' ? 360 : 0;
+  return centralInterval(
+    shift + best[key],
+    drawn.map((value) => shift + value),
+    unit,
+    cycle,
+  );
+}
+
+/** A number that the case fixed, without the last digits that its way through the solver's parameters left. */
+function asWritten(value: number): number {
+  return Number(value.toPrecision(14));
 }
 
 function sample(values: Float64Array): number[] {

@@ -3,10 +3,11 @@ import { RandomStream } from '../../src/numerics/random.js';
 import { curvatureAt, expectedInformation, gaussianDraws } from '../../src/solving/curvature.js';
 import { fitModel, THOROUGH } from '../../src/solving/fit-model.js';
 import { explorerFor } from '../../src/solving/prepare.js';
-import type { ModelPoint, VelocityProblem } from '../../src/solving/problem.js';
+import type { ModelPoint } from '../../src/solving/model-structure.js';
+import type { VelocityProblem } from '../../src/solving/problem.js';
 import fits from '../reference/fits/fits.json' with { type: 'json' };
 import { expectWithin } from '../support/expect-within.js';
-import { BARE_CASE, scatteredTimes, simulated, velocitySet } from './helpers.js';
+import { BARE_CASE, scatteredTimes, simulated, velocitySet, inverse } from './helpers.js';
 
 const LIMIT = {
   rel: 1e-8,
@@ -136,6 +137,26 @@ describe('curvature', () => {
     });
   });
 
+  it('knows of a jitter what residuals of just the expected size tell: second differences of ln L', () => {
+    const sigmas = Array.from({ length: 24 }, (_, i) => 1 + 0.2 * (i % 7));
+    const jitter = 1.7;
+    // Residuals +-sqrt(sigma^2 + s^2): for them the observed information is the expected one, sum of 2 s^2/v^2.
+    const velocities = sigmas.map((sigma, i) => (i % 2 === 0 ? 1 : -1) * Math.hypot(sigma, jitter));
+    const set = velocitySet({ times: sigmas.map((_, i) => i), velocities, sigmas });
+    const { explorer } = explorerFor(BARE_CASE, set);
+    const problem = explorer.builder.problem({ companions: [], drift: 0 });
+    const density = (s: number): number =>
+      problem.logDensity({ parameters: Float64Array.of(0), jittersMps: Float64Array.of(s) });
+    const h = 1e-3;
+    const second = (density(jitter + h) - 2 * density(jitter) + density(jitter - h)) / (h * h);
+    const point = { parameters: Float64Array.of(0), jittersMps: Float64Array.of(jitter) };
+    expectWithin(expectedInformation(problem, point)[3]!, -second, {
+      rel: 1e-4,
+      unit: '(m/s)^-2',
+      why: 'rounding of ln L over a step of 1e-3',
+    });
+  });
+
   it('draws have the mean and the covariance of the Gaussian, and jitters stay positive', () => {
     const { problem, point } = evenlySampled();
     const { covariance, size } = curvatureAt(problem, point);
@@ -165,7 +186,7 @@ describe('curvature', () => {
     }
   });
 
-  it('says so when the data do not determine a parameter: two instruments, one with no leverage on the other', () => {
+  it('says so when the data do not determine a parameter: nine parameters from five velocities', () => {
     const set = velocitySet({ times: [0, 1, 2, 3, 4], velocities: [1, 2, 1, 3, 2], sigmas: [1, 1, 1, 1, 1] });
     const { explorer } = explorerFor(BARE_CASE, set);
     const problem = explorer.builder.problem({ companions: [{ choice: null, circular: false }], drift: 2 });
@@ -173,30 +194,6 @@ describe('curvature', () => {
       parameters: Float64Array.of(Math.log(1), 0, 0.1, 0.1, 1, 2, 0, 0),
       jittersMps: Float64Array.of(1),
     };
-    // Nine parameters from five velocities.
     expect(curvatureAt(problem, point).covariance).toBeNull();
   });
 });
-
-/** Gauss-Jordan with pivoting, after scaling the diagonal to one. */
-function inverse(matrix: Float64Array, n: number): number[][] {
-  const scale = Array.from({ length: n }, (_, j) => Math.sqrt(Math.abs(matrix[j * n + j]!)));
-  const rows = scale.map((s, j) => [
-    ...scale.map((t, k) => matrix[j * n + k]! / (s * t)),
-    ...scale.map((_, k) => (k === j ? 1 : 0)),
-  ]);
-  for (let j = 0; j < n; j++) {
-    const best = rows
-      .slice(j)
-      .reduce((top, row, i) => (Math.abs(row[j]!) > Math.abs(rows[top]![j]!) ? j + i : top), j);
-    [rows[j], rows[best]] = [rows[best]!, rows[j]!];
-    const pivot = rows[j]![j]!;
-    rows[j] = rows[j]!.map((value) => value / pivot);
-    rows.forEach((row, i) => {
-      if (i === j) return;
-      const factor = row[j]!;
-      rows[i] = row.map((value, k) => value - factor * rows[j]![k]!);
-    });
-  }
-  return rows.map((row, j) => row.slice(n).map((value, k) => value / (scale[j]! * scale[k]!)));
-}

@@ -139,3 +139,26 @@ export function denseFit(
     solution: solution.map((value, j) => value / scales[j]!),
   };
 }
+
+/** Inverse of a symmetric (n, n) matrix by Gauss-Jordan elimination with pivoting, after scaling the diagonal to one. */
+export function inverse(matrix: Float64Array, n: number): number[][] {
+  const scale = Array.from({ length: n }, (_, j) => Math.sqrt(Math.abs(matrix[j * n + j]!)));
+  const rows = scale.map((s, j) => [
+    ...scale.map((t, k) => matrix[j * n + k]! / (s * t)),
+    ...scale.map((_, k) => (k === j ? 1 : 0)),
+  ]);
+  for (let j = 0; j < n; j++) {
+    const best = rows
+      .slice(j)
+      .reduce((top, row, i) => (Math.abs(row[j]!) > Math.abs(rows[top]![j]!) ? j + i : top), j);
+    [rows[j], rows[best]] = [rows[best]!, rows[j]!];
+    const pivot = rows[j]![j]!;
+    rows[j] = rows[j]!.map((value) => value / pivot);
+    rows.forEach((row, i) => {
+      if (i === j) return;
+      const factor = row[j]!;
+      rows[i] = row.map((value, k) => value - factor * rows[j]![k]!);
+    });
+  }
+  return rows.map((row, j) => row.slice(n).map((value, k) => value / (scale[j]! * scale[k]!)));
+}

@@ -38,7 +38,7 @@ const STATED: Case = {
     },
     south: { zeroPointMps: { kind: 'fixed', value: -300 }, jitterMps: { kind: 'fixed', value: 2 } },
     dome: {
-      zeroPointMps: { kind: 'range', low: 20, high: 60 },
+      zeroPointMps: { kind: 'prior', value: 40, sigma: 11 },
       jitterMps: { kind: 'range', low: 0, high: 30 },
     },
   },
@@ -178,7 +178,7 @@ describe('VelocityProblem', () => {
 
   it('the density is ln L minus half the square of every stated prior', () => {
     const { problem, point } = build(STATED, PLANS[2]!.plan, [0.7, 2, 3]);
-    // North zero point 13 under 10 +- 3, dome zero point 37 under a range 20 .. 60 (mean 40, sigma 40/sqrt 12),
+    // North zero point 13 under 10 +- 3, dome zero point 37 under 40 +- 11,
     // jitter 0.7 under 1 +- 0.5, period 36.8 under 37.1 +- 0.2; conjunction is read from the coordinates.
     const [lnP, longitude, k, h] = problem.coordinatesAt(point.parameters);
     const e = Math.hypot(k!, h!);
@@ -190,7 +190,7 @@ describe('VelocityProblem', () => {
     const off = conjunction + explorerEpoch() - (EPOCH + 4);
     const squares = [
       ((13 - 10) / 3) ** 2,
-      ((37 - 40) / (40 / Math.sqrt(12))) ** 2,
+      ((37 - 40) / 11) ** 2,
       ((0.7 - 1) / 0.5) ** 2,
       ((36.8 - 37.1) / 0.2) ** 2,
       (off - period * Math.round(off / period)) ** 2,

@@ -38,6 +38,11 @@ export interface Parametrisation {
    * @param jacobian - row-major (priorCount, size), overwritten, or null
    */
   priors(free: Float64Array, offset: number, rows: Float64Array, jacobian: Float64Array | null): void;
+  /**
+   * ln of the slopes d element / d parameter, summed over the free elements: what turns a density stated in the elements
+   * into one of the parameters. 0 where the parameters are coordinates and no element is stated.
+   */
+  logSlopes(free: Float64Array, offset: number): number;
   /** Writes the free parameters nearest to the given elements. */
   fromElements(elements: RelativeElements, free: Float64Array, offset: number): void;
 }

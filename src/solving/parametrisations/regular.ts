@@ -23,6 +23,7 @@ export function regularParametrisation(circular: boolean): Parametrisation {
     priors(): void {
       // No priors: the coordinates are free.
     },
+    logSlopes: () => 0,
     fromElements(elements: RelativeElements, free: Float64Array, offset: number): void {
       const { periodDays, eccentricity: e, argPeriastronStarRad: omega } = elements;
       const longitude = omega - (2 * Math.PI * elements.timePeriastronDays) / periodDays;

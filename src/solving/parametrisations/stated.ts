@@ -154,6 +154,12 @@ export function statedParametrisation(
         if (jacobian !== null) jacobian[row * size + column] = dial.slope(u) / dial.prior!.sigma;
       });
     },
+    logSlopes(free, offset): number {
+      return freeDials.reduce(
+        (sum, dial, column) => sum + Math.log(Math.abs(dial.slope(free[offset + column]!))),
+        0,
+      );
+    },
     fromElements(elements: RelativeElements, free: Float64Array, offset: number): void {
       const e = eccentricity.fixed ?? elements.eccentricity;
       const w = omega.fixed ?? elements.argPeriastronStarRad;
