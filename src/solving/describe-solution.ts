@@ -9,10 +9,19 @@ import { absoluteElements } from './elements-report.js';
 import type { Explorer, PlannedFit } from './explorer.js';
 import type { Found } from './find-companions.js';
 import { fixedQuantity, unknownQuantity } from './quantities.js';
+import type { CompanionMarginals } from './posterior/marginals.js';
+import type { PosteriorSample } from './posterior/sample-posterior.js';
 import { foundStageRecord } from './search-record.js';
 import { backgroundOf } from './search-stage.js';
 import type { Settled } from './settle.js';
-import type { CandidateRecord, InstrumentRecord, Quantity, SolutionRecord, Solved } from './types.js';
+import type {
+  CandidateRecord,
+  CompanionRecord,
+  InstrumentRecord,
+  Quantity,
+  SolutionRecord,
+  Solved,
+} from './types.js';
 import { drawnQuantity, fittedCovariance, type Sampled } from './uncertainties.js';
 import { warningsOf } from './warnings.js';
 import { windowFunction } from './window-function.js';
@@ -34,12 +43,16 @@ export function describeSolution(
   settled: Settled,
   sampled: Sampled,
   making: Making,
+  posterior: PosteriorSample | null = null,
 ): Solved {
   const { explorer, found, best, rivals, spanDays } = settled;
   const { epochBjdTdb } = explorer.builder;
   const letters = lettersOf(theCase, best);
   const companions = best.plan.companions.map((_, c) =>
-    companionRecord(explorer, best, sampled, c, letters[c]!, rivals[c]!, making),
+    withMarginals(
+      companionRecord(explorer, best, sampled, c, letters[c]!, rivals[c]!, making),
+      posterior?.marginals[c] ?? null,
+    ),
   );
   const residualsMps = residualsOf(best);
   const instruments = instrumentRecords(velocities, sampled, best, residualsMps);
@@ -69,8 +82,8 @@ export function describeSolution(
           : fixedQuantity(0, 'm/s/yr^2'),
     },
     fit: fitRecord(best, sampled, letters, velocities, residualsMps),
-    posterior: null,
-    assumptions: assumptionsOf(theCase, best, sampled.curvature.source),
+    posterior: posterior?.record ?? null,
+    assumptions: assumptionsOf(theCase, best, posterior === null ? sampled.curvature.source : 'posterior'),
     warnings: warningsOf({ explorer, best, theCase, velocities, companions, instruments }),
     provenance: {
       program: 'tugline',
@@ -89,7 +102,16 @@ export function describeSolution(
     residualsMps,
     stages: found.stages.map((stage) => foundStageRecord(stage, spanDays)),
     window: windowFunction(timesDays, weights, spanDays),
+    posterior: posterior?.draws(sampled, letters) ?? null,
   };
+}
+
+function withMarginals(record: CompanionRecord, marginals: CompanionMarginals | null): CompanionRecord {
+  if (marginals === null) return record;
+  const { evidence } = record;
+  const eccentricity =
+    evidence.eccentricity === null ? null : { ...evidence.eccentricity, marginal: marginals.eccentricity };
+  return { ...record, evidence: { ...evidence, marginal: marginals.presence, eccentricity } };
 }
 
 function lettersOf(theCase: Case, best: PlannedFit): string[] {

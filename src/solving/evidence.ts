@@ -50,6 +50,7 @@ export function evidenceOf(
       permuted === null
         ? 'analytic bound of Baluev 2008 with the noise level refitted, shared between sinusoids and eccentric shapes'
         : `${permuted.count} permutations of the residuals within instruments, ${permuted.exceeding} of which reached the power of the sinusoid (analytic bound ${falseAlarmProbability.toExponential(1)})`,
+    marginal: null,
     eccentricity: eccentricityEvidence(explorer, best, index, variants, options.seed),
   };
 }
@@ -59,16 +60,22 @@ interface Shapes {
   readonly eccentric: PlannedFit | null;
 }
 
-/** The solution with companion `index` circular and with it eccentric; null where the case forbids one. */
-function shapesOf(explorer: Explorer, best: PlannedFit, index: number): Shapes {
+/** The solution with companion `index` circular if it is eccentric, and the other way round; null where that cannot be. */
+export function otherShape(explorer: Explorer, best: PlannedFit, index: number): PlannedFit | null {
   const companion = best.plan.companions[index]!;
-  const isFree = companion.choice?.elements.eccentricity === undefined;
+  if (companion.choice?.elements.eccentricity !== undefined) return null;
   const companions = best.plan.companions.map((other, c) =>
     c === index ? { ...other, circular: !other.circular } : other,
   );
-  const other = isFree ? explorer.fit({ ...best.plan, companions }, explorer.portable(best)) : null;
-  const usable = other === null || other.fit.status === 'failed' || !explorer.isInRange(other) ? null : other;
-  return companion.circular ? { circular: best, eccentric: usable } : { circular: usable, eccentric: best };
+  const fitted = explorer.fit({ ...best.plan, companions }, explorer.portable(best));
+  return fitted.fit.status === 'failed' || !explorer.isInRange(fitted) ? null : fitted;
+}
+
+function shapesOf(explorer: Explorer, best: PlannedFit, index: number): Shapes {
+  const other = otherShape(explorer, best, index);
+  return best.plan.companions[index]!.circular
+    ? { circular: best, eccentric: other }
+    : { circular: other, eccentric: best };
 }
 
 function eccentricityEvidence(
@@ -87,6 +94,7 @@ function eccentricityEvidence(
     deltaBic: circular.fit.bic - eccentric.fit.bic,
     // (chi2_ecc/chi2_circ)^((N - M)/2) [LucySweeney1971]; with the jitter refitted the ratio is exp(-2 gain/n).
     lucySweeneyProbability: degrees > 0 ? Math.exp((-Math.max(0, gain) * degrees) / n) : null,
+    marginal: null,
     eccentricFit: best === eccentric ? null : eccentricElements(explorer, eccentric, index, seed),
   };
 }

@@ -15,6 +15,8 @@ const LARGEST_COUNT = 8;
 
 export interface RivalSearch {
   readonly rivals: readonly Rival[];
+  /** Their fits, in the same order; `null` for one outside the periods that were asked for. */
+  readonly fits: readonly (PlannedFit | null)[];
   readonly tried: number;
   /** A refit that beats the solution, if there is one. */
   readonly better: PlannedFit | null;
@@ -32,7 +34,7 @@ export function rivalsOf(
   otherPeriods: readonly number[],
 ): RivalSearch {
   const choice = best.plan.companions[index]!.choice;
-  if (choice?.elements.period !== undefined) return { rivals: [], tried: 0, better: null };
+  if (choice?.elements.period !== undefined) return { rivals: [], fits: [], tried: 0, better: null };
   const portable = explorer.portable(best);
   const companion = portable.companions[index]!;
   const frequency = 1 / companion.periodDays;
@@ -47,7 +49,7 @@ export function rivalsOf(
   const plan = { ...best.plan, companions: best.plan.companions.filter((_, c) => c !== index) };
   const start = { ...portable, companions: portable.companions.filter((_, c) => c !== index) };
   const background = backgroundOf(explorer.fit(plan, start, ROUGH).fit);
-  const rivals: Rival[] = [];
+  const judged: { readonly rival: Rival; readonly fit: PlannedFit | null }[] = [];
   let better: PlannedFit | null = null;
   let tried = 0;
   for (const trial of trials) {
@@ -67,23 +69,25 @@ export function rivalsOf(
     const found = explorer.portable(refit).companions[index]!;
     // A refit that slid back to the solution itself is no rival, nor one that slid onto another rival.
     const apart = (period: number): boolean => Math.abs(1 / found.periodDays - 1 / period) > 0.5 * resolution;
-    if (!apart(companion.periodDays) || !rivals.every((rival) => apart(rival.period))) continue;
+    if (!apart(companion.periodDays) || !judged.every(({ rival }) => apart(rival.period))) continue;
     if (!explorer.isInRange(refit)) continue;
     const isBetter =
       refit.fit.logDensity > best.fit.logDensity + 1e-3 && refit.fit.bic < (better ?? best).fit.bic;
-    if (isBetter && wasAskedFor(explorer, found.periodDays)) better = refit;
-    rivals.push({
+    const isAskedFor = wasAskedFor(explorer, found.periodDays);
+    if (isBetter && isAskedFor) better = refit;
+    const rival: Rival = {
       period: found.periodDays,
       kind: trial.kind,
       deltaLogLikelihood: refit.fit.logLikelihood - best.fit.logLikelihood,
       eccentricity: found.eccentricity,
-    });
+    };
+    judged.push({ rival, fit: isAskedFor ? refit : null });
   }
-  const kept = rivals
-    .filter((rival) => rival.deltaLogLikelihood > DISMISSED_BELOW)
-    .sort((a, b) => b.deltaLogLikelihood - a.deltaLogLikelihood)
+  const kept = judged
+    .filter(({ rival }) => rival.deltaLogLikelihood > DISMISSED_BELOW)
+    .sort((a, b) => b.rival.deltaLogLikelihood - a.rival.deltaLogLikelihood)
     .slice(0, LARGEST_COUNT);
-  return { rivals: kept, tried, better };
+  return { rivals: kept.map(({ rival }) => rival), fits: kept.map(({ fit }) => fit), tried, better };
 }
 
 /** Rivals outside the searched range are told, but none of them becomes the solution. */

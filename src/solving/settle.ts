@@ -50,14 +50,17 @@ function settleRivals(explorer: Explorer, found: Found): { best: PlannedFit; riv
       better = search.better;
     }
     if (better === null || turn >= ADOPTIONS) {
-      while (rivals.length < best.plan.companions.length)
-        rivals.push(
-          rivalsOf(explorer, best, rivals.length, otherPeriods(explorer, found, best, rivals.length)),
-        );
-      return { best, rivals };
+      return { best, rivals: better === null ? rivals : allRivals(explorer, found, best) };
     }
     best = polish(explorer.settleStructure(better));
   }
+}
+
+/** Rivals of every companion of a solution. */
+export function allRivals(explorer: Explorer, found: Found, best: PlannedFit): RivalSearch[] {
+  return best.plan.companions.map((_, c) =>
+    rivalsOf(explorer, best, c, otherPeriods(explorer, found, best, c)),
+  );
 }
 
 /** Periods of the other finalists of the stage at which this companion was found, and of other strong peaks. */

@@ -32,11 +32,15 @@ export interface Evidence {
   readonly falseAlarmProbability: number;
   /** How the false-alarm probability was obtained, in words. */
   readonly falseAlarmMethod: string;
+  /** With against without this companion; `null` with `--quick` or where it could not be computed reliably. */
+  readonly marginal: MarginalComparison | null;
   /** Circular against eccentric: ln L and BIC of the eccentric minus the circular fit, and the Lucy-Sweeney probability. */
   readonly eccentricity: {
     readonly deltaLogLikelihood: number;
     readonly deltaBic: number; // BIC(circular) - BIC(eccentric); positive favours e > 0
     readonly lucySweeneyProbability: number | null;
+    /** Eccentric against circular; `null` as above. */
+    readonly marginal: MarginalComparison | null;
     readonly eccentricFit: {
       readonly eccentricity: Quantity;
       readonly argumentOfPeriastron: Quantity;
@@ -107,6 +111,65 @@ export interface NeighbourRecord {
   readonly mutualHillSpacing: Quantity; // mutual Hill radii
 }
 
+/** ln of the ratio of marginal likelihoods, with the standard error of its own computation. */
+export interface MarginalComparison {
+  readonly logBayesFactor: number;
+  readonly standardError: number;
+}
+
+/** One mode of the posterior (a set of periods), sampled on its own and weighted by its marginal likelihood. */
+export interface PosteriorMode {
+  /** Periods of the companions, d, in the order of `companions`. */
+  readonly periods: readonly number[];
+  readonly logEvidence: number;
+  readonly standardError: number;
+  /** Share of the posterior probability among the modes that were sampled, 0..1. */
+  readonly weight: number;
+}
+
+/** How the posterior was sampled, and whether that can be trusted. */
+export interface PosteriorRecord {
+  readonly method: string;
+  readonly chains: number;
+  /** Draws of all chains of the reported mode, after warm-up. */
+  readonly draws: number;
+  readonly warmup: number;
+  readonly rHatMax: number;
+  readonly bulkEssMin: number;
+  readonly tailEssMin: number;
+  readonly ebfmiMin: number;
+  readonly divergences: number;
+  /** `converged`: R-hat < 1.01 and bulk and tail effective sample sizes > 400 for every element; else why sampling stopped. */
+  readonly status: 'converged' | 'draw-limit' | 'interrupted';
+  /** Marginal likelihood of the reported model in the reported mode. */
+  readonly logEvidence: number;
+  readonly logEvidenceError: number;
+  /** Best first; the first is the one that is reported. */
+  readonly modes: readonly PosteriorMode[];
+  /** The priors in sentences. */
+  readonly priors: readonly string[];
+}
+
+/** One number of every draw. */
+export interface PosteriorColumn {
+  /** Path of the quantity in `solution.json`, e.g. `companions.b.elements.period`. */
+  readonly key: string;
+  readonly unit: string;
+  /** (chains x drawsPerChain), chain after chain, in the order of drawing. */
+  readonly values: Float64Array;
+  /** 360 for angles, else 0: values are unwrapped to within half a cycle of the reported value. */
+  readonly cycle: number;
+}
+
+/** The draws of the reported mode, in the units of `solution.json`. */
+export interface PosteriorDraws {
+  readonly chains: number;
+  readonly drawsPerChain: number;
+  readonly columns: readonly PosteriorColumn[];
+  /** (chains x drawsPerChain), ln of the posterior density in the sampler's coordinates. */
+  readonly logDensity: Float64Array;
+}
+
 export interface SolutionRecord {
   readonly schema: 'tugline/solution';
   readonly version: 1;
@@ -142,11 +205,8 @@ export interface SolutionRecord {
       readonly matrix: readonly (readonly number[])[];
     };
   };
-  /** `null` with `--quick`, and until the posterior is sampled. */
-  readonly posterior: null | {
-    readonly method: string; readonly chains: number; readonly draws: number; readonly rHatMax: number;
-    readonly bulkEssMin: number; readonly tailEssMin: number; readonly divergences: number;
-  }; // prettier-ignore
+  /** `null` with `--quick`: uncertainties are then from the curvature at the solution. */
+  readonly posterior: PosteriorRecord | null;
   /** Sentences: what the numbers assume. */
   readonly assumptions: readonly string[];
   readonly warnings: readonly { readonly code: string; readonly message: string }[];
@@ -207,4 +267,6 @@ export interface Solved {
   readonly residualsMps: Float64Array;
   readonly stages: readonly SearchStage[];
   readonly window: WindowFunction;
+  /** `null` with `--quick`. */
+  readonly posterior: PosteriorDraws | null;
 }

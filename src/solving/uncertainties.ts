@@ -36,7 +36,7 @@ export interface Sampled {
 }
 
 /** Passages nearest to the weighted mean time of the data, where they are least correlated with the period. */
-function passagesNearData(problem: VelocityProblem, point: ModelPoint): Reference[] {
+export function passagesNearData(problem: VelocityProblem, point: ModelPoint): Reference[] {
   const { timesDays, sigmasMps, instrumentOf } = problem.data;
   let total = 0;
   let sum = 0;
@@ -62,6 +62,28 @@ function drawMeasured(measured: Measured | null, random: RandomStream): number |
   return measured.value;
 }
 
+/** Stars drawn from what the case says of them, one per draw of the elements. */
+export function drawStars(theCase: Case, count: number, seed: number): StarDraw[] {
+  const random = RandomStream.fromSeed(seed, 2);
+  const { massSolar, radiusSolar, effectiveTemperatureK } = theCase.star;
+  return Array.from({ length: count }, () => ({
+    massSolar: drawMeasured(massSolar, random),
+    radiusSolar: drawMeasured(radiusSolar, random),
+    effectiveTemperatureK: drawMeasured(effectiveTemperatureK, random),
+    inclinationDeg: null,
+  }));
+}
+
+/** The star as the case gives it. */
+export function starOf(theCase: Case): StarDraw {
+  return {
+    massSolar: theCase.star.massSolar?.value ?? null,
+    radiusSolar: theCase.star.radiusSolar?.value ?? null,
+    effectiveTemperatureK: theCase.star.effectiveTemperatureK?.value ?? null,
+    inclinationDeg: null,
+  };
+}
+
 export function sampleAround(
   problem: VelocityProblem,
   point: ModelPoint,
@@ -74,25 +96,13 @@ export function sampleAround(
     curvature.covariance === null
       ? []
       : gaussianDraws(problem, point, curvature.covariance, DRAWS, RandomStream.fromSeed(seed, 1));
-  const random = RandomStream.fromSeed(seed, 2);
-  const { massSolar, radiusSolar, effectiveTemperatureK } = theCase.star;
   return {
     problem,
     references,
     values: reportedValues(problem, point, references),
     draws: draws.map((draw) => reportedValues(problem, draw, references)),
-    stars: draws.map(() => ({
-      massSolar: drawMeasured(massSolar, random),
-      radiusSolar: drawMeasured(radiusSolar, random),
-      effectiveTemperatureK: drawMeasured(effectiveTemperatureK, random),
-      inclinationDeg: null,
-    })),
-    star: {
-      massSolar: massSolar?.value ?? null,
-      radiusSolar: radiusSolar?.value ?? null,
-      effectiveTemperatureK: effectiveTemperatureK?.value ?? null,
-      inclinationDeg: null,
-    },
+    stars: drawStars(theCase, draws.length, seed),
+    star: starOf(theCase),
     curvature,
     point,
   };

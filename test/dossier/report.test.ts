@@ -55,7 +55,7 @@ describe('report.md', () => {
 
   it('never calls a fit without a posterior a posterior, nor the other way round', () => {
     expect(text).toContain('Uncertainties come from the curvature');
-    const posterior = { method: 'NUTS', chains: 4, draws: 8000, rHatMax: 1.003, bulkEssMin: 2100, tailEssMin: 1900, divergences: 0 }; // prettier-ignore
+    const posterior = { method: 'NUTS', chains: 4, draws: 8000, rHatMax: 1.003, bulkEssMin: 2100, tailEssMin: 1900, divergences: 0, warmup: 300, ebfmiMin: 0.9, status: 'converged' as const, logEvidence: -300, logEvidenceError: 0.02, modes: [], priors: [] }; // prettier-ignore
     const sampled = report(solvedFixture({ record: { posterior } }), NOTHING);
     expect(sampled).toContain('8000 draws from the posterior in 4 chains');
     expect(sampled).not.toContain('come from the curvature');

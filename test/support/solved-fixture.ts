@@ -109,6 +109,7 @@ export function makeSolved(request: FixtureRequest): Solved {
     residualsMps: residuals,
     stages,
     window: makeWindow(times, request.gridLength ?? 4000),
+    posterior: null,
   };
 }
 
@@ -233,6 +234,7 @@ function makeRecord(
         deltaBic: 160,
         falseAlarmProbability: 1e-12,
         falseAlarmMethod: 'invented',
+        marginal: null,
         eccentricity: null,
       },
       rivals: [],

@@ -48,10 +48,12 @@ export function companionFixture(): CompanionRecord {
       deltaBic: 297.91,
       falseAlarmProbability: 3.2e-21,
       falseAlarmMethod: 'analytic bound (Baluev 2008)',
+      marginal: null,
       eccentricity: {
         deltaLogLikelihood: 41.23,
         deltaBic: 73.4,
         lucySweeneyProbability: 1e-12,
+        marginal: null,
         eccentricFit: null,
       },
     },
@@ -166,5 +168,6 @@ export function solvedFixture(changes: FixtureChanges = {}): Solved {
     residualsMps: Float64Array.from([0.5, -1.25, 0.1, -2]),
     stages: [],
     window: { frequenciesPerDay: new Float64Array(0), power: new Float64Array(0), peaks: [] },
+    posterior: null,
   };
 }

@@ -1,0 +1,186 @@
+/** Samples one mode of the posterior until every element has converged or the limit is reached. */
+import { bulkEss, ebfmi, rankNormalisedRHat, tailEss } from '../../numerics/sampling/diagnostics.js';
+import { bridgeEvidence } from '../../numerics/sampling/bridge.js';
+import { RandomStream } from '../../numerics/random.js';
+import type { PortablePoint } from '../model-builder.js';
+import type { ChainOutput } from './chain-job.js';
+import { densityOf, type DensityRecipe } from './chain-job.js';
+import type { ChainPool } from './chain-pool.js';
+import { curvatureOfDensity } from './density-curvature.js';
+import type { PosteriorDensity } from './posterior-density.js';
+
+/** What "converged" means, and how far sampling goes to get there. */
+export const CONVERGENCE = {
+  chains: 4,
+  largestRHat: 1.01,
+  smallestEss: 400,
+  warmup: 300,
+  batch: 1000,
+  /** Draws per chain at which sampling stops unconverged. */
+  limit: 10_000,
+} as const;
+
+export interface ModeSample {
+  readonly density: PosteriorDensity;
+  /** Positions of each chain, row-major (draws, size). */
+  readonly chains: readonly Float64Array[];
+  readonly logDensities: readonly Float64Array[];
+  readonly drawsPerChain: number;
+  readonly rHatMax: number;
+  readonly bulkEssMin: number;
+  readonly tailEssMin: number;
+  readonly ebfmiMin: number;
+  readonly divergences: number;
+  readonly converged: boolean;
+  /** The user stopped the sampling before it had converged. */
+  readonly interrupted: boolean;
+  readonly logEvidence: number;
+  readonly logEvidenceError: number;
+}
+
+export interface ModeOptions {
+  readonly seed: number;
+  /** First random stream; every chain takes the next. */
+  readonly stream: number;
+  readonly limit: number;
+  readonly isStopped: () => boolean;
+  /** Share of the way to the required sample size, 0..1. */
+  readonly onProgress: (share: number) => void;
+}
+
+/** Numbers whose chains are judged: free of wrapping and of mirror images. */
+export function judgedNumbers(density: PosteriorDensity, position: Float64Array): number[] {
+  const portable = density.portable(position);
+  return [
+    ...portable.companions.flatMap((companion) => {
+      const root = Math.sqrt(companion.eccentricity);
+      const omega = companion.argPeriastronStarRad;
+      const longitude = omega - (2 * Math.PI * companion.timePeriastronDays) / companion.periodDays;
+      return [
+        Math.log(companion.periodDays),
+        companion.eccentricity,
+        root * Math.cos(omega),
+        root * Math.sin(omega),
+        Math.cos(longitude),
+        Math.sin(longitude),
+        Math.log(companion.semiAmplitudeMps),
+      ];
+    }),
+    ...portable.zeroPointsMps,
+    ...portable.drift,
+    ...portable.jittersMps,
+  ];
+}
+
+interface Judgement {
+  readonly rHatMax: number;
+  readonly bulkEssMin: number;
+  readonly tailEssMin: number;
+}
+
+function judge(density: PosteriorDensity, chains: readonly Float64Array[]): Judgement {
+  const { size } = density;
+  const perChain = chains.map((positions) => {
+    const draws = positions.length / size;
+    const rows = Array.from({ length: draws }, (_, d) =>
+      judgedNumbers(density, positions.subarray(d * size, (d + 1) * size)),
+    );
+    const width = rows[0]?.length ?? 0;
+    return Array.from({ length: width }, (_, k) => Float64Array.from(rows, (row) => row[k]!));
+  });
+  let rHatMax = 1;
+  let bulkEssMin = Infinity;
+  let tailEssMin = Infinity;
+  const width = perChain[0]?.length ?? 0;
+  for (let k = 0; k < width; k++) {
+    const series = perChain.map((columns) => columns[k]!);
+    const first = series[0]![0]!;
+    if (series.every((chain) => chain.every((value) => value === first))) continue; // fixed by the case
+    rHatMax = Math.max(rHatMax, rankNormalisedRHat(series));
+    bulkEssMin = Math.min(bulkEssMin, bulkEss(series));
+    tailEssMin = Math.min(tailEssMin, tailEss(series));
+  }
+  return { rHatMax, bulkEssMin, tailEssMin };
+}
+
+function joined(parts: readonly Float64Array[]): Float64Array {
+  const all = new Float64Array(parts.reduce((sum, part) => sum + part.length, 0));
+  let at = 0;
+  for (const part of parts) {
+    all.set(part, at);
+    at += part.length;
+  }
+  return all;
+}
+
+/** Marginal likelihood of a mode from its draws, folded onto one mirror image of the jitters. */
+function evidenceFromDraws(
+  density: PosteriorDensity,
+  chains: readonly Float64Array[],
+  random: RandomStream,
+): { readonly logEvidence: number; readonly standardError: number } {
+  const { size } = density;
+  const all = joined(chains);
+  for (let at = 0; at < all.length; at += size) all.set(density.fold(all.subarray(at, at + size)), at);
+  return bridgeEvidence(density.folded, all, { random });
+}
+
+export async function sampleMode(
+  pool: ChainPool,
+  recipe: DensityRecipe,
+  start: PortablePoint,
+  options: ModeOptions,
+): Promise<ModeSample> {
+  const density = densityOf(recipe);
+  const position = density.position(start);
+  const covariance = curvatureOfDensity(density, position);
+  await pool.start(
+    Array.from({ length: CONVERGENCE.chains }, (_, chain) => ({
+      density: recipe,
+      start: position,
+      covariance,
+      warmup: CONVERGENCE.warmup,
+      seed: options.seed,
+      stream: options.stream + chain,
+    })),
+  );
+  const outputs: ChainOutput[][] = Array.from({ length: CONVERGENCE.chains }, () => []);
+  let judgement: Judgement = { rHatMax: Infinity, bulkEssMin: 0, tailEssMin: 0 };
+  let chains: Float64Array[] = [];
+  let draws = 0;
+  let converged = false;
+  let interrupted = false;
+  while (!converged && draws < options.limit) {
+    if (options.isStopped() && draws > 0) {
+      interrupted = true;
+      break;
+    }
+    const batch = await pool.draw(CONVERGENCE.batch);
+    batch.forEach((output, chain) => outputs[chain]!.push(output));
+    draws += CONVERGENCE.batch;
+    chains = outputs.map((parts) => joined(parts.map((part) => part.positions)));
+    judgement = judge(density, chains);
+    const ess = Math.min(judgement.bulkEssMin, judgement.tailEssMin);
+    converged = judgement.rHatMax < CONVERGENCE.largestRHat && ess > CONVERGENCE.smallestEss;
+    options.onProgress(Math.min(1, ess / CONVERGENCE.smallestEss));
+  }
+  const energies = outputs.map((parts) => joined(parts.map((part) => part.energies)));
+  const evidence = evidenceFromDraws(
+    density,
+    chains,
+    RandomStream.fromSeed(options.seed, options.stream + 500),
+  );
+  return {
+    density,
+    chains,
+    logDensities: outputs.map((parts) => joined(parts.map((part) => part.logDensities))),
+    drawsPerChain: draws,
+    ...judgement,
+    ebfmiMin: Math.min(...energies.map((energy) => ebfmi(energy))),
+    divergences: outputs.flat().reduce((sum, part) => sum + part.divergences, 0),
+    converged,
+    interrupted,
+    logEvidence: evidence.logEvidence,
+    logEvidenceError: evidence.standardError,
+  };
+}
