@@ -3,12 +3,14 @@ import { cpus } from 'node:os';
 import { benchKepler } from './kepler.bench.js';
 import { benchLeastSquares } from './least-squares.bench.js';
 import { benchPeriodogram } from './periodogram.bench.js';
+import { benchSampler } from './sampler.bench.js';
 import { benchSolve } from './solve.bench.js';
 import { benchStart } from './start.bench.js';
 
 const BENCHES: readonly (readonly [name: string, bench: () => string[]])[] = [
   ['kepler', benchKepler],
   ['periodogram', benchPeriodogram],
+  ['sampler', benchSampler],
   ['solve', benchSolve],
   ['start', benchStart],
   ['least-squares', benchLeastSquares],

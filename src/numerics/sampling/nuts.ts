@@ -59,6 +59,7 @@ export class NutsChain {
   private readonly settings: ChainSettings;
   private readonly flow: Flow;
   private readonly trajectory: Trajectory;
+  private readonly guess: Float64Array;
   private metric: Float64Array;
   private step: number;
   private isWarm = false;
@@ -70,6 +71,7 @@ export class NutsChain {
     const depth = settings.maximumDepth ?? DEFAULT_DEPTH;
     checkSettings(density.size, settings, depth);
     this.settings = settings;
+    this.guess = settings.covariance.slice();
     this.metric = settings.covariance.slice();
     this.flow = new Flow(density, this.metric);
     this.trajectory = new Trajectory(this.flow, random, depth);
@@ -168,7 +170,7 @@ export class NutsChain {
   private renewMetric(learnt: RunningCovariance): void {
     const { size } = this.flow;
     const covariance = learnt.covariance();
-    shrinkTowards(covariance, this.settings.covariance, size, learnt.count, size);
+    shrinkTowards(covariance, this.guess, size, learnt.count, size);
     this.metric = covariance;
     this.flow.setCovariance(covariance);
     this.flow.evaluate(this.trajectory.state);

@@ -17,15 +17,18 @@ interface Measures {
   readonly bulkEss: number;
   readonly tailEss: number;
 }
-const reference = readReference<{ source: string; expected: Readonly<Record<string, Measures>> }>(
-  'diagnostics.json',
-);
-const { chains: given } = readReference<{ chains: Readonly<Record<string, readonly number[][]>> }>(
-  'chains.json',
-);
-const autoregressive = readReference<{ source: string; theory: number; chain: number[] }>(
-  'autoregressive.json',
-);
+const reference = readReference('diagnostics.json') as {
+  source: string;
+  expected: Readonly<Record<string, Measures>>;
+};
+const { chains: given } = readReference('chains.json') as {
+  chains: Readonly<Record<string, readonly number[][]>>;
+};
+const autoregressive = readReference('autoregressive.json') as {
+  source: string;
+  theory: number;
+  chain: number[];
+};
 
 function setNamed(name: string): Float64Array[] {
   return given[name]!.map((chain) => Float64Array.from(chain));

@@ -11,11 +11,11 @@ import { expectWithin } from '../../support/expect-within.js';
 import { mean, rootMeanSquare, standardDeviation } from '../../../src/numerics/summary.js';
 import { densityOf, identity, pooledPositions, readReference, run } from './densities.js';
 
-const reference = readReference<{
+const reference = readReference('evidence.json') as {
   eggBox: number;
   shells: number;
   line: { t: number[]; y: number[]; sigma: number; priorSigma: number; logEvidence: number };
-}>('evidence.json');
+};
 
 interface Estimate {
   readonly logEvidence: number;
