@@ -2,6 +2,7 @@
  * Units at the file edge: the only place where a written unit becomes a factor. Inside, times are days, velocities m/s,
  * angles degrees, star mass and radius solar (nominal, IAU 2015 Resolution B3), temperatures kelvin.
  */
+import { DAYS_PER_YEAR } from '../orbit/constants.js';
 
 /** What a number in a case or on the command line stands for. */
 export type QuantityKind =
@@ -15,7 +16,6 @@ interface UnitList {
   readonly factors: Readonly<Record<string, number>>;
 }
 
-const DAYS_PER_JULIAN_YEAR = 365.25;
 const HOURS_PER_DAY = 24;
 const MINUTES_PER_DAY = 1440;
 const DEGREES_PER_RADIAN = 180 / Math.PI;
@@ -31,7 +31,7 @@ const UNITS: Readonly<Record<QuantityKind, UnitList>> = {
     canonical: 'd',
     factors: {
       d: 1, day: 1, days: 1, h: 1 / HOURS_PER_DAY, hr: 1 / HOURS_PER_DAY, hours: 1 / HOURS_PER_DAY,
-      min: 1 / MINUTES_PER_DAY, yr: DAYS_PER_JULIAN_YEAR, year: DAYS_PER_JULIAN_YEAR, years: DAYS_PER_JULIAN_YEAR,
+      min: 1 / MINUTES_PER_DAY, yr: DAYS_PER_YEAR, year: DAYS_PER_YEAR, years: DAYS_PER_YEAR,
     }, // prettier-ignore
   },
   date: { canonical: 'd', factors: { d: 1, day: 1, days: 1, bjd: 1, bjdtdb: 1 } },
@@ -55,8 +55,8 @@ const UNITS: Readonly<Record<QuantityKind, UnitList>> = {
     factors: {
       'm/s/yr': 1,
       'm/s/year': 1,
-      'm/s/d': DAYS_PER_JULIAN_YEAR,
-      'm/s/day': DAYS_PER_JULIAN_YEAR,
+      'm/s/d': DAYS_PER_YEAR,
+      'm/s/day': DAYS_PER_YEAR,
       'km/s/yr': 1000,
     },
   },
@@ -65,8 +65,8 @@ const UNITS: Readonly<Record<QuantityKind, UnitList>> = {
     factors: {
       'm/s/yr2': 1,
       'm/s/year2': 1,
-      'm/s/d2': DAYS_PER_JULIAN_YEAR ** 2,
-      'm/s/day2': DAYS_PER_JULIAN_YEAR ** 2,
+      'm/s/d2': DAYS_PER_YEAR ** 2,
+      'm/s/day2': DAYS_PER_YEAR ** 2,
       'km/s/yr2': 1000,
     },
   },

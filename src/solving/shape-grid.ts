@@ -1,5 +1,5 @@
 /** The grid of the shape scan: which eccentricities, periods and phases are tried, and the tabulated shapes. */
-import { TWO_PI } from '../orbit/constants.js';
+import { DAYS_PER_YEAR, TWO_PI } from '../orbit/constants.js';
 import { solveKeplerArray } from '../orbit/kepler-array.js';
 
 /** Trial eccentricities; between neighbours the shapes overlap enough for the nonlinear fit to walk across. */
@@ -15,7 +15,7 @@ const ANCHOR_TRUE_ANOMALIES_RAD = [-2, -1, 0, 1, 2] as const;
  * 0.01 au (two solar radii), P = 365.25 d (0.01/(1 - e))^1.5.
  */
 export function shortestPeriodDays(eccentricity: number): number {
-  return 365.25 * (0.01 / (1 - eccentricity)) ** 1.5;
+  return DAYS_PER_YEAR * (0.01 / (1 - eccentricity)) ** 1.5;
 }
 
 /** Width of the periastron swing as a fraction of the period: 1 / (2 dnu/dM at periastron / pi). */

@@ -1,6 +1,7 @@
 /** What the user must know before believing a solution. */
 import type { Case, VelocitySet } from '../observations/types.js';
 import type { Explorer, PlannedFit } from './explorer.js';
+import { YEAR_PER_DAY } from './window-function.js';
 import type { CompanionRecord, InstrumentRecord } from './types.js';
 
 export interface Warning {
@@ -100,7 +101,7 @@ const terrestrialPeriods: Check = ({ explorer, companions }) =>
     const frequency = 1 / elements.period.value!;
     const near = [
       { name: 'one day', value: 1 },
-      { name: 'one year', value: 1 / 365.2422 },
+      { name: 'one year', value: YEAR_PER_DAY },
     ].find(({ value }) => Math.abs(frequency - value) < Math.max(0.5 / explorer.range.spanDays, 0.003 * value));
     return near === undefined
       ? []
