@@ -35,6 +35,18 @@ function logAmplitudeRange(scales: PriorScales): number {
   return Math.log(Math.log1p(scales.largestAmplitudeMps / scales.amplitudeScaleMps));
 }
 
+/**
+ * ln of the integral over ln P of the eccentricities that do not touch the star, 1 - r P^(-2/3) where that is positive:
+ * what takes the place of the range of ln P when e is uniform up to that limit.
+ */
+function logAllowedRange(scales: PriorScales): number {
+  const high = Math.log(scales.longestPeriodDays);
+  // Below this period even a circular orbit lies inside the star.
+  const low = Math.max(Math.log(scales.shortestPeriodDays), 1.5 * Math.log(scales.starRadiusAtOneDay));
+  const lost = 1.5 * scales.starRadiusAtOneDay * (Math.exp((-2 / 3) * low) - Math.exp((-2 / 3) * high));
+  return Math.log(high - low - lost);
+}
+
 /** Largest eccentricity at a period: the periastron stays outside the star. */
 function eccentricityLimit(logPeriod: number, scales: PriorScales): number {
   return 1 - scales.starRadiusAtOneDay * Math.exp((-2 / 3) * logPeriod);
@@ -52,7 +64,7 @@ export function eccentricMap(scales: PriorScales): CompanionMap {
     size: 5,
     // Disc of area pi, longitude over 2 pi.
     logNormalisation:
-      logPeriodRange(scales) + Math.log(2 * Math.PI) + Math.log(Math.PI) + logAmplitudeRange(scales),
+      logAllowedRange(scales) + Math.log(2 * Math.PI) + Math.log(Math.PI) + logAmplitudeRange(scales),
     toCoordinates(position, offset, coordinates, jacobian, priorGradient): number {
       const logPeriod = position[offset]!;
       const x = position[offset + 2]!;

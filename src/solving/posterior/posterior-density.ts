@@ -9,19 +9,10 @@ import type { ModelPoint } from '../model-structure.js';
 import { portableFrom, type ModelPlan, type PortablePoint } from '../model-builder.js';
 import type { VelocityProblem } from '../problem.js';
 import { circularMap, eccentricMap, type CompanionMap } from './companion-map.js';
+import { jitterDial, type JitterDial } from './jitter-dial.js';
 import type { PriorScales } from './priors.js';
 import { statedMap } from './stated-map.js';
 import { VelocityLikelihood } from './velocity-likelihood.js';
-
-/** How one jitter is sampled: s = scale |sinh u|, mirrored at 0 and smooth there (uniform in u is 1/sqrt(s^2 + scale^2)). */
-interface JitterDial {
-  readonly instrument: number;
-  readonly lowMps: number;
-  readonly highMps: number;
-  readonly prior: { readonly centre: number; readonly sigma: number } | null;
-  /** The case states this jitter, so the default density does not apply. */
-  readonly isStated: boolean;
-}
 
 /** Position vector: companions, free linear parameters (zero points, slope, curvature), free jitters. */
 export class PosteriorDensity implements SmoothDensity {
@@ -34,6 +25,8 @@ export class PosteriorDensity implements SmoothDensity {
   readonly #linearColumns: readonly number[];
   readonly #jitters: readonly JitterDial[];
   readonly #jitterStart: number;
+  /** Coordinates of jitters for which u and -u are the same. */
+  readonly #mirrored: readonly number[];
   readonly #zeroPointPriors: readonly {
     readonly at: number;
     readonly centre: number;
@@ -70,11 +63,10 @@ export class PosteriorDensity implements SmoothDensity {
     this.#offsets = offsets;
     this.#linearColumns = problem.linearColumns.map((column) => (column >= 0 ? at++ : -1));
     this.#jitterStart = at;
-    this.#jitters = problem.freeJitters.map((instrument) => {
-      const { lowMps, highMps, prior } = structure.jitters[instrument]!;
-      const isStated = prior !== null || highMps < 1e6;
-      return { instrument, lowMps, highMps: Math.min(highMps, scales.largestJitterMps), prior, isStated };
-    });
+    this.#jitters = problem.freeJitters.map((instrument) =>
+      jitterDial(instrument, structure.jitters[instrument]!, scales),
+    );
+    this.#mirrored = this.#jitters.flatMap((dial, j) => (dial.isMirrored ? [this.#jitterStart + j] : []));
     at += this.#jitters.length;
     this.size = at;
     this.#zeroPointPriors = structure.zeroPoints.flatMap((choice, i) => {
@@ -114,9 +106,7 @@ export class PosteriorDensity implements SmoothDensity {
             : scales.curvatureHalfWidthMpsPerDay2;
       sum += Math.log(2 * halfWidth);
     });
-    for (const dial of this.#jitters) {
-      sum += dial.isStated ? 0 : Math.log(Math.asinh(dial.highMps / scales.jitterScaleMps));
-    }
+    for (const dial of this.#jitters) sum += dial.logNormalisation;
     return sum;
   }
 
@@ -138,13 +128,13 @@ export class PosteriorDensity implements SmoothDensity {
       const at = this.#linearColumns[l]!;
       if (at >= 0) this.#linear[l] = position[at]!;
     }
-    const jitterScale = this.#scales.jitterScaleMps;
     for (let j = 0; j < this.#jitters.length; j++) {
       const dial = this.#jitters[j]!;
-      const s = jitterScale * Math.abs(Math.sinh(position[this.#jitterStart + j]!));
-      if (!(s >= dial.lowMps && s <= dial.highMps)) return -Infinity;
-      this.#jitterMps[dial.instrument] = s;
+      const u = position[this.#jitterStart + j]!;
+      logPrior += dial.logPrior(u);
+      this.#jitterMps[dial.instrument] = dial.value(u);
     }
+    if (!(logPrior > -Infinity)) return -Infinity;
     const companions = this.#maps.length;
     if (
       !this.#term.predict(
@@ -185,28 +175,16 @@ export class PosteriorDensity implements SmoothDensity {
       const dial = this.#jitters[j]!;
       const at = this.#jitterStart + j;
       const u = position[at]!;
-      const s = this.#jitterMps[dial.instrument]!;
-      const stretch = Math.hypot(s, jitterScale);
-      const slope = stretch * (u < 0 ? -1 : 1);
-      let byS = byJitter[dial.instrument]!;
-      if (dial.isStated) {
-        // Uniform in s, or Gaussian: the slope of the map enters.
-        logPrior += Math.log(stretch);
-        byS += s / (stretch * stretch);
-        if (dial.prior !== null) {
-          const z = (s - dial.prior.centre) / dial.prior.sigma;
-          logPrior -= 0.5 * z * z;
-          byS -= z / dial.prior.sigma;
-        }
-      }
-      gradient[at] = byS * slope;
+      gradient[at] = byJitter[dial.instrument]! * dial.slope(u) + dial.logPriorSlope(u);
     }
     return logLikelihood + logPrior - this.#logNormalisation;
   }
 
-  /** The mirror image of a position with all jitter coordinates positive. */
+  /** The mirror image of a position with all mirrored coordinates positive. */
   fold(position: Float64Array): Float64Array {
-    return position.map((value, at) => (at >= this.#jitterStart ? Math.abs(value) : value));
+    const folded = Float64Array.from(position);
+    for (const at of this.#mirrored) folded[at] = Math.abs(folded[at]!);
+    return folded;
   }
 
   /**
@@ -214,11 +192,11 @@ export class PosteriorDensity implements SmoothDensity {
    * images, over which the prior is normalised. What evidences are computed from.
    */
   get folded(): SmoothDensity {
-    const start = this.#jitterStart;
+    const mirrored = this.#mirrored;
     return {
       size: this.size,
       evaluate: (position, gradient) => {
-        for (let at = start; at < position.length; at++) if (position[at]! < 0) return -Infinity;
+        for (const at of mirrored) if (position[at]! < 0) return -Infinity;
         return this.evaluate(position, gradient);
       },
     };
@@ -236,9 +214,7 @@ export class PosteriorDensity implements SmoothDensity {
         position[at] = l < instruments ? portable.zeroPointsMps[l]! : portable.drift[l - instruments]!;
     });
     this.#jitters.forEach((dial, j) => {
-      const s = Math.min(dial.highMps, Math.max(dial.lowMps, portable.jittersMps[dial.instrument]!));
-      // A jitter of exactly zero is the mirror point, where the slope vanishes: start beside it.
-      position[this.#jitterStart + j] = Math.max(0.3, Math.asinh(s / this.#scales.jitterScaleMps));
+      position[this.#jitterStart + j] = dial.position(portable.jittersMps[dial.instrument]!);
     });
     return position;
   }
@@ -273,8 +249,7 @@ export class PosteriorDensity implements SmoothDensity {
     });
     const jittersMps = Float64Array.from(this.#jitterMps);
     this.#jitters.forEach((dial, j) => {
-      jittersMps[dial.instrument] =
-        this.#scales.jitterScaleMps * Math.abs(Math.sinh(position[this.#jitterStart + j]!));
+      jittersMps[dial.instrument] = dial.value(position[this.#jitterStart + j]!);
     });
     return portableFrom(this.#coordinates, this.#maps.length, linear, jittersMps);
   }

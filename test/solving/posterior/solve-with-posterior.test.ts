@@ -108,6 +108,27 @@ describe('solveWithPosterior', () => {
     expect(record.warnings.map((warning) => warning.code)).toContain('period-longer-than-data');
   });
 
+  it('stays inside a stated range of the jitter, also where the data would have it elsewhere', async () => {
+    const velocities = eccentricSet();
+    const [name] = velocities.instruments as [string];
+    for (const [low, high] of [
+      [5.1, 7.3],
+      [0, 0.05],
+      [4, 9],
+    ] as const) {
+      const instruments = {
+        [name]: { zeroPointMps: null, jitterMps: { kind: 'range', low, high } as const },
+      };
+      const { record } = await solveWithPosterior({ ...BARE_CASE, instruments }, velocities, CHOICES);
+      const { jitter } = record.velocity.instruments[0]!;
+      expect(record.posterior!.status).toBe('converged');
+      expect(jitter.lower!).toBeGreaterThanOrEqual(low);
+      expect(jitter.upper!).toBeLessThanOrEqual(high);
+      // The data want no jitter: the draws crowd at the lower end, over more than a sliver of the range.
+      expect(jitter.upper! - jitter.lower!).toBeGreaterThan(0.05 * (high - low));
+    }
+  });
+
   it('stops when it is told to and says so; a limit that is too low is called unconverged', async () => {
     const velocities = eccentricSet();
     const stop = new AbortController();
