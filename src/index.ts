@@ -57,6 +57,8 @@ export type {
 // The main job: companions, orbits and masses; and the periods alone
 export { solveCase } from './solving/solve-case.js';
 export type { SolveOptions } from './solving/solve-case.js';
+export { solveWithPosterior } from './solving/solve-with-posterior.js';
+export type { PosteriorSolveOptions } from './solving/solve-with-posterior.js';
 export { searchPeriods } from './solving/search-periods.js';
 export type { PeriodsOptions, PeriodsReport } from './solving/search-periods.js';
 export type {

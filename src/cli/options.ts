@@ -43,7 +43,8 @@ export const SEARCH_OPTIONS: readonly OptionSpec[] = [
   option('permutations', 'Search', 'N', 'shuffle the data N times for the false-alarm probability; 0 uses the analytic bound (default: 0)'),
 ]; // prettier-ignore
 
-export const QUICK_OPTION: OptionSpec = option('quick', 'Uncertainty', null, 'uncertainties from the curvature at the solution only'); // prettier-ignore
+export const QUICK_OPTION: OptionSpec = option('quick', 'Uncertainty', null, 'no posterior: uncertainties from the curvature at the solution'); // prettier-ignore
+export const DRAW_LIMIT_OPTION: OptionSpec = option('draw-limit', 'Uncertainty', 'N', 'most draws of the posterior per chain, a whole number from 1000; sampling ends sooner, once the chains have converged (default: 10000)'); // prettier-ignore
 export const SEED_OPTION: OptionSpec = option('seed', 'Uncertainty', 'N', 'seed of all random numbers, a whole number from 0 (default: 1)'); // prettier-ignore
 
 export const FORCE_OPTION: OptionSpec = option('force', 'Output', null, 'replace what an earlier run has written'); // prettier-ignore

@@ -5,15 +5,17 @@ import { solutionJson } from './json.js';
 import { modelTable } from './model-table.js';
 import { report } from './report.js';
 import { residualsTable } from './residuals-table.js';
+import { posteriorTable, thinningOf } from './posterior-table.js';
 import { runJson, type RunFacts } from './run-record.js';
 import type { DossierFile } from './write-dossier.js';
 
-/** Texts and tables by name; a new output format is one file and its line here. */
-const WRITERS: readonly (readonly [string, (solved: Solved) => string])[] = [
+/** Texts and tables by name, `null` leaves one out; a new output format is one file and its line here. */
+const WRITERS: readonly (readonly [string, (solved: Solved) => string | null])[] = [
   ['solution.json', ({ record }) => solutionJson(record)],
   ['elements.csv', ({ record }) => elementsTable(record)],
   ['residuals.csv', residualsTable],
   ['model.csv', modelTable],
+  ['posterior.csv', ({ posterior }) => (posterior === null ? null : posteriorTable(posterior))],
 ];
 
 /**
@@ -25,7 +27,10 @@ export function dossierFiles(
   charts: readonly { readonly name: string; readonly bytes: Uint8Array; readonly caption: string }[],
   run: () => RunFacts,
 ): DossierFile[] {
-  const files: DossierFile[] = WRITERS.map(([name, write]) => ({ name, bytes: write(solved) }));
+  const files: DossierFile[] = WRITERS.flatMap(([name, write]) => {
+    const bytes = write(solved);
+    return bytes === null ? [] : [{ name, bytes }];
+  });
   for (const chart of charts) files.push({ name: `charts/${chart.name}`, bytes: chart.bytes });
   const names = [...files.map((file) => file.name), 'report.md', 'run.json'];
   const shown = charts.map((chart) => ({ path: `charts/${chart.name}`, caption: chart.caption }));
@@ -36,6 +41,7 @@ export function dossierFiles(
       run(),
       solved.record.provenance.version,
       names.filter((name) => name !== 'run.json'),
+      solved.posterior === null ? 1 : thinningOf(solved.posterior),
     ),
   });
   return files;

@@ -5,6 +5,7 @@ export { report } from './report.js';
 export { elementsTable } from './elements-table.js';
 export { residualsTable } from './residuals-table.js';
 export { modelGrid, modelTable, type ModelGrid } from './model-table.js';
+export { posteriorTable } from './posterior-table.js';
 export { runJson, type RunFacts } from './run-record.js';
 
 // Writing.

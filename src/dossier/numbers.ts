@@ -11,9 +11,20 @@ import { escapeMarkdown } from './escape.js';
 
 export type NumberStyle = 'text' | 'markdown' | 'csv';
 
+/** Quantiles of the draws of a quantity that cannot be negative, in its unit. */
+export interface DrawnBound {
+  /** Lower end of the central 68.3 %. */
+  readonly lower: number;
+  readonly median: number;
+  /** 95 % of the draws are smaller. */
+  readonly limit: number;
+}
+
 export interface QuantityChoices {
   /** The quantity cannot be negative; nearer to zero than two of its lower errors it is shown as an upper limit. */
   readonly zeroBounded?: boolean;
+  /** What the draws say of a quantity that cannot be negative; without it the interval of the quantity decides. */
+  readonly drawn?: DrawnBound | null;
   /** Append the unit (default true; never in `csv`). */
   readonly withUnit?: boolean;
 }
@@ -92,7 +103,7 @@ export function machineFixed(value: number, decimals: number): string {
 const SUPERSCRIPT = '⁰¹²³⁴⁵⁶⁷⁸⁹';
 
 /** `e-12` for terminals, ` × 10⁻¹²` for the report. */
-function powerOfTen(exponent: number, style: 'text' | 'markdown'): string {
+export function powerOfTen(exponent: number, style: 'text' | 'markdown'): string {
   if (style === 'text') return `e${exponent}`;
   const digits = Array.from(String(Math.abs(exponent)), (digit) => SUPERSCRIPT[Number(digit)]);
   return ` × 10${exponent < 0 ? '⁻' : ''}${digits.join('')}`;
@@ -132,10 +143,14 @@ function errorsOf(quantity: Quantity): { plus: number; minus: number } | null {
     : errors;
 }
 
-/** True when the data only bound the quantity from above (see `QuantityChoices.zeroBounded`). */
-export function isUpperLimit(quantity: Quantity): boolean {
+/**
+ * True when the data only bound the quantity from above (see `QuantityChoices.zeroBounded`). With draws their median stands
+ * for the value: the value itself is where the likelihood is largest, which for a jitter is often at the very edge.
+ */
+export function isUpperLimit(quantity: Quantity, drawn: DrawnBound | null = null): boolean {
   const { value, sigma, lower, upper } = quantity;
   if (value === null || upper === null || upper <= 0 || quantity.fixed === true) return false;
+  if (drawn !== null) return value <= 0 || drawn.median < 2 * (drawn.median - drawn.lower);
   const below = lower !== null ? value - lower : (sigma ?? 0);
   return value <= 0 || (below > 0 && value < 2 * below) || (lower !== null && lower > value);
 }
@@ -155,7 +170,8 @@ function unequal(value: string, plus: string, minus: string, style: 'text' | 'ma
  * `±` stands for the mean of the upper and the lower error when they differ by less than 10 % of it, which is about what a
  * finite number of draws leaves between the two sides of a symmetric distribution; the record keeps both ends as they are.
  *
- * An upper limit is the upper end of the central 68.3 % interval, hence a one-sided 84 % limit.
+ * An upper limit is the value below which 95 % of the draws lie, where there are draws; else the upper end of the central
+ * 68.3 % interval, hence a one-sided 84 % limit.
  */
 export function formatQuantity(
   quantity: Quantity,
@@ -170,8 +186,11 @@ export function formatQuantity(
   }
   const tail = choices.withUnit === false || unit === '' ? '' : ` ${unit}`;
   if (quantity.fixed === true) return `${significant(value, 10)}${tail} (fixed)`;
-  if (choices.zeroBounded === true && isUpperLimit(quantity))
-    return `${style === 'markdown' ? '&lt;' : '<'} ${significant(quantity.upper ?? value, 2)}${tail} (84 %)`;
+  const drawn = choices.drawn ?? null;
+  if (choices.zeroBounded === true && isUpperLimit(quantity, drawn)) {
+    const limit = drawn?.limit ?? quantity.upper ?? value;
+    return `${style === 'markdown' ? '&lt;' : '<'} ${significant(limit, 2)}${tail} (${drawn === null ? 84 : 95} %)`;
+  }
   const errors = errorsOf(quantity);
   if (errors === null) {
     const bare = significant(value, 6) + tail;

@@ -3,6 +3,7 @@ import type { Solved } from '../solving/types.js';
 import { escapeMarkdown } from './escape.js';
 import { assumptions } from './sections/assumptions.js';
 import { certainty } from './sections/certainty.js';
+import { determined } from './sections/determined.js';
 import { instruments } from './sections/instruments.js';
 import { making } from './sections/making.js';
 import { presence } from './sections/presence.js';
@@ -12,7 +13,15 @@ import { capitalised, counted } from './titles.js';
 import { verdictOf } from './verdict.js';
 
 /** The report in reading order; a new section is one file and its line here. */
-const SECTIONS: readonly ReportSection[] = [presence, certainty, rivals, instruments, assumptions, making];
+const SECTIONS: readonly ReportSection[] = [
+  presence,
+  certainty,
+  determined,
+  rivals,
+  instruments,
+  assumptions,
+  making,
+];
 
 export function report(solved: Solved, context: ReportContext): string {
   const { record } = solved;

@@ -8,8 +8,17 @@ export interface RunFacts {
   readonly machine: { readonly system: string; readonly architecture: string; readonly processors: number };
 }
 
-/** Names of the other files are listed so that a later run knows what in the folder is its own to replace. */
-export function runJson(facts: RunFacts, version: string, files: readonly string[]): string {
+/**
+ * Names of the other files are listed so that a later run knows what in the folder is its own to replace.
+ *
+ * @param posteriorStep - `posterior.csv` holds every draw (1), or one in so many
+ */
+export function runJson(
+  facts: RunFacts,
+  version: string,
+  files: readonly string[],
+  posteriorStep = 1,
+): string {
   return stableJson({
     schema: 'tugline/run',
     version: 1,
@@ -18,5 +27,6 @@ export function runJson(facts: RunFacts, version: string, files: readonly string
     durationSeconds: facts.durationSeconds,
     machine: facts.machine,
     files: [...files].sort(),
+    ...(posteriorStep > 1 ? { thinned: { 'posterior.csv': { oneDrawIn: posteriorStep } } } : {}),
   });
 }

@@ -19,6 +19,7 @@ describe('report.md', () => {
     expect(headings).toEqual([
       '## What is there',
       '## How sure this is',
+      '## What is well determined and what is not',
       '## What else would fit',
       '## Instruments',
       '## What these numbers assume',

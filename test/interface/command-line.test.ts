@@ -131,6 +131,12 @@ describe('a wrong request ends with exit code 2, an error line and a way out', (
     [['solve', 'a.csv', '--seed', 'NaN'], 'error: --seed is "NaN"', 'a whole number from 0'],
     [['solve', 'a.csv', '--seed', ''], 'error: --seed is ""', 'a whole number from 0'],
     [['solve', 'a.csv', '--permutations', '-5'], 'error: --permutations is "-5"', 'from 0'],
+    [['solve', 'a.csv', '--draw-limit', '10'], 'error: --draw-limit is "10"', 'from 1000'],
+    [
+      ['solve', 'a.csv', '--quick', '--draw-limit', '2000'],
+      'error: --draw-limit and --quick',
+      'leave --quick out',
+    ],
     [['solve', 'a.csv', '--companions', '-1'], 'error: --companions is "-1"', 'from 0 to 20'],
     [['solve', 'a.csv', '--drift', 'cubic'], 'error: --drift is "cubic"', 'quadratic'],
     [['solve', 'a.csv', '--unit', 'mph'], 'error: --unit is "mph"', 'm/s, km/s'],

@@ -33,6 +33,31 @@ describe('progressOn', () => {
     expect(err[1]).toBe('\r');
   });
 
+  it('tells the time left while draws are taken, and only on a screen', () => {
+    const { terminal, err } = listeningTerminal();
+    let time = 0;
+    const progress = progressOn({ ...terminal, interactive: true }, false, () => time);
+    progress.update('searching', 0.3);
+    // 10 % a second from 40 %: at 60 % four seconds are left; at 1 % in 10 s from 60 % on average 1.75 % a second.
+    for (const [at, fraction] of [
+      [1000, 0.4],
+      [3000, 0.6],
+      [13_000, 0.61],
+    ] as const) {
+      time = at;
+      progress.update('sampling', fraction);
+    }
+    expect(err[0]).not.toContain('left');
+    expect(err[1]!.endsWith('sampling: 40 %')).toBe(true);
+    expect(err[2]!.endsWith('sampling: 60 %, about 4 s left')).toBe(true);
+    expect(err[3]!.endsWith('sampling: 61 %, about 22 s left')).toBe(true);
+    const plain = listeningTerminal();
+    const lines = progressOn(plain.terminal, false, () => time);
+    time += 6000;
+    lines.update('sampling', 0.5);
+    expect(plain.err).toEqual(['sampling: 50 %\n']);
+  });
+
   it('is wiped when the work fails, and hands the error on', async () => {
     const { terminal, err } = listeningTerminal();
     const work = withProgress({ ...terminal, interactive: true }, false, (update) => {

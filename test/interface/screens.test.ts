@@ -3,7 +3,8 @@ import { describe, expect, it } from 'vitest';
 import { columnsOf } from '../../src/cli/screens/layout.js';
 import { periodsJson, periodsScreen } from '../../src/cli/screens/periods-screen.js';
 import { solutionScreen } from '../../src/cli/screens/solution-screen.js';
-import type { SearchStage, WindowFunction } from '../../src/solving/types.js';
+import type { PosteriorRecord, SearchStage, WindowFunction } from '../../src/solving/types.js';
+import { drawsOf, posteriorRecord, uniformGrid } from '../support/posterior-fixture.js';
 import { companionFixture, fixed, solvedFixture, unknown } from '../support/solved-record-fixture.js';
 
 const plain = (_kind: unknown, text: string): string => text;
@@ -64,6 +65,39 @@ describe('solutionScreen', () => {
     const massless = solutionScreen(solvedFixture({ companions: [{ ...base, derived }] }), 'd', plain);
     expect(massless).toContain('(2.01 ± 0.11)e-10 M_sun');
     expect(massless).not.toContain('minimum mass');
+  });
+
+  it('says what the posterior is worth, in 80 columns', () => {
+    const base = companionFixture();
+    const marginal = { logBayesFactor: 148.6301, standardError: 0.0144 };
+    const eccentricity = { ...base.evidence.eccentricity!, marginal: { ...marginal, logBayesFactor: -2.9 } };
+    const companions = [{ ...base, evidence: { ...base.evidence, marginal, eccentricity } }];
+    const draws = drawsOf({ 'velocity.instruments.south.jitter': uniformGrid(1999, 2) });
+    const mode = (period: number, weight: number) => ({ periods: [period], logEvidence: 0, standardError: 0, weight }); // prettier-ignore
+    const screen = (changes: Partial<PosteriorRecord>): string => {
+      const record = { posterior: posteriorRecord(changes) };
+      return solutionScreen({ ...solvedFixture({ companions, record }), posterior: draws }, 'd', plain);
+    };
+    const converged = screen({});
+    expect(converged).toContain('posterior, converged; intervals hold 68.3 %');
+    expect(converged).toContain('4 chains × 2000 draws; R̂ 1.003, ESS 1900');
+    expect(converged).toContain('ln B 148.63 ± 0.01; e > 0: ln B -2.90 ± 0.01');
+    expect(converged).toMatch(/south .* < 1\.9 \(95 %\)/); // the 95 % point of an even grid from 0 to 2
+    expect(converged).toMatch(/north .* < 1\.3 \(84 %\)/);
+    expect(converged).not.toContain('modes');
+    const bad = {
+      rHatMax: 1.2,
+      draws: 800_000,
+      modes: [mode(41.6321, 0.6), mode(0.97921, 0.2), mode(1.0236, 0.2)],
+    };
+    for (const status of ['draw-limit', 'interrupted'] as const) {
+      const unconverged = screen({ ...bad, status });
+      expect(unconverged).toContain('posterior, NOT converged (');
+      expect(unconverged).not.toContain('posterior, converged');
+      expect(unconverged).toMatch(/modes +41\.6321 d \(60 %\), 0\.97921 d \(20 %\), 1\.0236 d \(20 %\);/);
+      expect(unconverged.split('\n').filter((line) => line.length > 80)).toEqual([]);
+    }
+    expect(text).toContain('curvature at the solution; intervals hold 68.3 %');
   });
 
   it('says that nothing was found, or that the fit is unusable', () => {

@@ -6,8 +6,9 @@ import type { RunFacts } from '../../dossier/run-record.js';
 import type { CommandArguments } from '../command-arguments.js';
 import type { Command } from '../command.js';
 import {
-  FORCE_OPTION, INPUT_OPTIONS, MODEL_OPTIONS, outOption, QUICK_OPTION, SEARCH_OPTIONS, SEED_OPTION, STAR_OPTIONS, TARGET_OPTION,
+  DRAW_LIMIT_OPTION, FORCE_OPTION, INPUT_OPTIONS, MODEL_OPTIONS, outOption, QUICK_OPTION, SEARCH_OPTIONS, SEED_OPTION, STAR_OPTIONS, TARGET_OPTION,
 } from '../options.js'; // prettier-ignore
+import { withInterrupt } from '../interrupt.js';
 import { withProgress } from '../progress.js';
 import { solvingChoices } from '../solving-options.js';
 import type { Terminal } from '../terminal.js';
@@ -20,6 +21,9 @@ function runFacts(started: number): RunFacts {
     machine: { system: process.platform, architecture: process.arch, processors: availableParallelism() },
   };
 }
+
+/** One chain a thread; there are four chains. */
+const MOST_THREADS = 4;
 
 async function run(given: CommandArguments, terminal: Terminal): Promise<number> {
   const started = performance.now();
@@ -35,8 +39,11 @@ async function run(given: CommandArguments, terminal: Terminal): Promise<number>
   const velocities = await readVelocities(theCase, given, terminal);
 
   const solved = await withProgress(terminal, given.isOn('quiet'), async (onProgress) => {
-    const { solveCase } = await import('../../solving/solve-case.js');
-    const solution = solveCase(theCase, velocities, { ...choices, onProgress });
+    const { solveWithPosterior } = await import('../../solving/solve-with-posterior.js');
+    const threads = Math.min(MOST_THREADS, availableParallelism());
+    const solution = await withInterrupt(terminal, (signal) =>
+      solveWithPosterior(theCase, velocities, { ...choices, threads, signal, onProgress }),
+    );
     onProgress('drawing charts', 0);
     const { renderCharts } = await import('../../dossier/charts/index.js');
     const files = dossierFiles(solution, await renderCharts(solution), () => runFacts(started));
@@ -57,8 +64,8 @@ export const solve: Command = {
   operands: 'CASE|TABLE...',
   summary: 'the main job: companions, orbits, masses, and the dossier',
   description: [
-    'Finds the companions in the velocities, fits their orbits, derives their masses, and writes a dossier: solution, report, tables and charts.',
-    'Takes one case (.yaml) or any number of tables; - reads one table from standard input. Options win over the case.',
+    'Finds the companions in the velocities, fits their orbits, derives their masses, samples the posterior, and writes a dossier: solution, report, tables and charts.',
+    'Takes one case (.yaml) or any number of tables; - reads one table from standard input. Options win over the case. Ctrl-C while the posterior is sampled ends the sampling and gives the result so far, marked as interrupted.',
   ],
   options: [
     ...INPUT_OPTIONS,
@@ -67,6 +74,7 @@ export const solve: Command = {
     ...MODEL_OPTIONS,
     ...SEARCH_OPTIONS,
     QUICK_OPTION,
+    DRAW_LIMIT_OPTION,
     SEED_OPTION,
     outOption('folder of the dossier (default: dossier- and the name of the target)'),
     FORCE_OPTION,

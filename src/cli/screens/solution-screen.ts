@@ -1,7 +1,15 @@
 /** The solution on one screen. */
-import type { CompanionRecord, Quantity, Solved } from '../../solving/types.js';
+import type { CompanionRecord, PosteriorRecord, Quantity, Solved } from '../../solving/types.js';
+import { keyOf, drawnBoundOf } from '../../dossier/draws.js';
 import { plainLabel } from '../../dossier/escape.js';
-import { formatProbability, formatQuantity, significant } from '../../dossier/numbers.js';
+import { logBayesFactor } from '../../dossier/evidence-words.js';
+import {
+  formatProbability,
+  formatQuantity,
+  significant,
+  type QuantityChoices,
+} from '../../dossier/numbers.js';
+import { essText, modeText, rHatText, shownModes } from '../../dossier/posterior-words.js';
 import { verdictOf } from '../../dossier/verdict.js';
 import { wrapped } from '../help.js';
 import type { Terminal } from '../terminal.js';
@@ -10,19 +18,28 @@ import { columnsOf, SCREEN_WIDTH } from './layout.js';
 type Row = readonly [name: string, value: string];
 type Painter = Terminal['paint'];
 
-function row(name: string, quantity: Quantity, zeroBounded = false): Row[] {
+function row(name: string, quantity: Quantity, choices: QuantityChoices = {}): Row[] {
   if (quantity.value === null) return [];
-  return [[name, formatQuantity(quantity, 'text', { zeroBounded })]];
+  return [[name, formatQuantity(quantity, 'text', choices)]];
 }
 
-function evidenceRow({ evidence }: CompanionRecord): Row {
+function evidenceRows({ evidence }: CompanionRecord): Row[] {
   const shape = evidence.eccentricity;
   const eccentric =
     shape === null
       ? ''
       : `; e > 0 ${shape.deltaBic >= 0 ? 'gains' : 'costs'} ${significant(Math.abs(shape.deltaBic), 3)}`;
   const alarm = formatProbability(evidence.falseAlarmProbability, 'text');
-  return ['evidence', `false alarm ${alarm}; BIC gains ${significant(evidence.deltaBic, 4)}${eccentric}`];
+  const factors = [
+    ...(evidence.marginal === null ? [] : [`ln B ${logBayesFactor(evidence.marginal, 'text')}`]),
+    ...(shape === null || shape.marginal === null
+      ? []
+      : [`e > 0: ln B ${logBayesFactor(shape.marginal, 'text')}`]),
+  ];
+  return [
+    ['evidence', `false alarm ${alarm}; BIC gains ${significant(evidence.deltaBic, 4)}${eccentric}`],
+    ...(factors.length === 0 ? [] : [['', factors.join('; ')] as const]),
+  ];
 }
 
 function rivalRow({ rivals }: CompanionRecord): Row {
@@ -35,12 +52,13 @@ function rivalRow({ rivals }: CompanionRecord): Row {
   ];
 }
 
-function companionRows(companion: CompanionRecord): Row[] {
-  const { elements, derived } = companion;
+function companionRows(companion: CompanionRecord, { posterior }: Solved): Row[] {
+  const { letter, elements, derived } = companion;
+  const drawn = drawnBoundOf(posterior, keyOf.element(letter, 'eccentricity'));
   const shape: Row[] = companion.circular
     ? [['eccentricity', '0 (circular orbit)']]
     : [
-        ...row('eccentricity', elements.eccentricity, true),
+        ...row('eccentricity', elements.eccentricity, { zeroBounded: true, drawn }),
         ...row('argument of periastron', elements.argumentOfPeriastron),
         ...row('periastron passage', elements.timeOfPeriastron),
       ];
@@ -54,22 +72,26 @@ function companionRows(companion: CompanionRecord): Row[] {
     ...(derived.semiMajorAxis.value === null ? row('mass function', derived.massFunction) : []),
     ...row('transit probability', derived.transitProbability),
     ...row('equilibrium temperature', derived.equilibriumTemperature),
-    evidenceRow(companion),
+    ...evidenceRows(companion),
     rivalRow(companion),
   ];
 }
 
-function companionLines(companion: CompanionRecord, paint: Painter): string[] {
-  const lines = columnsOf(companionRows(companion)).map((line) => `   ${line}`);
+function companionLines(companion: CompanionRecord, solved: Solved, paint: Painter): string[] {
+  const lines = columnsOf(companionRows(companion, solved)).map((line) => `   ${line}`);
   return [paint('heading', companion.letter) + lines[0]!.slice(companion.letter.length), ...lines.slice(1)];
 }
 
-function instrumentLines({ record }: Solved): string[] {
+function instrumentLines({ record, posterior }: Solved): string[] {
   const rows = record.velocity.instruments.map((instrument) => [
     plainLabel(instrument.name, 24),
     String(instrument.count),
     formatQuantity(instrument.zeroPoint, 'text', { withUnit: false }),
-    formatQuantity(instrument.jitter, 'text', { withUnit: false, zeroBounded: true }),
+    formatQuantity(instrument.jitter, 'text', {
+      withUnit: false,
+      zeroBounded: true,
+      drawn: drawnBoundOf(posterior, keyOf.jitter(instrument.name)),
+    }),
     significant(instrument.rms, 3),
   ]);
   return columnsOf([['m/s', 'n', 'zero point', 'jitter', 'rms'], ...rows], [1, 2, 3, 4], 3).map(
@@ -123,24 +145,44 @@ function fitRows({ record: { fit } }: Solved): Row[] {
   ]);
 }
 
+/** Where the uncertainties come from; a posterior that has not converged says so before anything else. */
+function uncertaintyRows(posterior: PosteriorRecord | null): Row[] {
+  if (posterior === null) return [['uncertainties', 'curvature at the solution; intervals hold 68.3 %']];
+  const { status, chains, draws, bulkEssMin, tailEssMin } = posterior;
+  const state = {
+    converged: 'converged',
+    'draw-limit': 'NOT converged (draw limit)',
+    interrupted: 'NOT converged (interrupted)',
+  }[status];
+  const ess = essText(Math.min(bulkEssMin, tailEssMin));
+  return [
+    ['uncertainties', `posterior, ${state}; intervals hold 68.3 %`],
+    ['', `${chains} chains × ${Math.round(draws / chains)} draws; R̂ ${rHatText(posterior)}, ESS ${ess}`],
+  ];
+}
+
+function modeRows(posterior: PosteriorRecord | null): Row[] {
+  const shown = shownModes(posterior).map((mode) => modeText(mode, 'text'));
+  if (shown.length === 0) return [];
+  const lines = wrapped(`${shown.join(', ')}; numbers are of the first`, SCREEN_WIDTH - 20);
+  return lines.map((line, index): Row => [index === 0 ? 'modes' : '', line]);
+}
+
 /** @param folder - where the dossier is, as the user would type it */
 export function solutionScreen(solved: Solved, folder: string, paint: Painter): string {
   const { record } = solved;
-  const uncertainties =
-    record.posterior === null
-      ? 'curvature at the solution'
-      : `${record.posterior.draws} draws of the posterior`;
   const messages = [...candidateMessages(solved), ...record.warnings.map((warning) => warning.message)];
   return [
     paint('heading', headline(solved)),
     '',
-    ...record.companions.flatMap((companion) => [...companionLines(companion, paint), '']),
+    ...record.companions.flatMap((companion) => [...companionLines(companion, solved, paint), '']),
     ...driftLines(solved),
     ...instrumentLines(solved),
     '',
     ...columnsOf([
       ...fitRows(solved),
-      ['uncertainties', `${uncertainties}; intervals hold 68.3 %`],
+      ...uncertaintyRows(record.posterior),
+      ...modeRows(record.posterior),
       ['dossier', plainLabel(folder)],
     ]).map((line) => `   ${line}`),
     ...(messages.length === 0 ? [] : ['', ...marked(messages, paint)]),

@@ -1,4 +1,5 @@
 /** Conventions, assumptions and warnings: what a reader must know before citing a number. */
+import type { SolutionRecord } from '../../solving/types.js';
 import { escapeMarkdown } from '../escape.js';
 import type { ReportSection } from './section.js';
 
@@ -15,6 +16,12 @@ function bullets(items: readonly string[]): string {
   return items.map((item) => `- ${item}`).join('\n');
 }
 
+/** What the solver assumed, and the priors where they count. */
+function stated({ assumptions: sentences, posterior }: SolutionRecord): string[] {
+  const all = [...sentences, ...(posterior?.priors ?? [])];
+  return all.length === 0 ? [] : [bullets(all.map(escapeMarkdown))];
+}
+
 export const assumptions: ReportSection = {
   heading: 'What these numbers assume',
   blocks: ({ record }) => [
@@ -24,7 +31,7 @@ export const assumptions: ReportSection = {
           '**Keep in mind:**',
           bullets(record.warnings.map((warning) => `**${escapeMarkdown(warning.message)}**`)),
         ]),
-    ...(record.assumptions.length === 0 ? [] : [bullets(record.assumptions.map(escapeMarkdown))]),
+    ...stated(record),
     'Conventions:',
     bullets([
       `Times are full Julian dates; the time scale is ${record.timeScale === 'unknown' ? 'not known' : record.timeScale}.`,

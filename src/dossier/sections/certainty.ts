@@ -1,7 +1,23 @@
 /** Evidence for each companion, for its eccentricity, and where the uncertainties come from. */
-import type { CompanionRecord, Evidence, SolutionRecord, Solved } from '../../solving/types.js';
+import type {
+  CompanionRecord,
+  Evidence,
+  MarginalComparison,
+  PosteriorRecord,
+  SolutionRecord,
+  Solved,
+} from '../../solving/types.js';
 import { escapeMarkdown } from '../escape.js';
+import { logBayesFactor, oddsOf, SCALE_SENTENCE, strengthOf } from '../evidence-words.js';
 import { formatProbability, formatQuantity, significant, typographicMinus } from '../numbers.js';
+import {
+  divergenceSentence,
+  energySentence,
+  essText,
+  missedRequirements,
+  rHatText,
+} from '../posterior-words.js';
+import { listed } from '../titles.js';
 import { chartBlocks, type ReportSection } from './section.js';
 
 /** Differences of ln L and BIC are good to a tenth at best; more digits would only look exact. */
@@ -32,12 +48,13 @@ function shapeSentence(evidence: Evidence, circular: boolean): string {
   return `${balance}${lucySweeney}.${other}`;
 }
 
-function evidenceParagraph(companion: CompanionRecord): string {
+function evidenceParagraph(companion: CompanionRecord, sampled: boolean): string {
   const { evidence } = companion;
   return (
     `**Companion ${companion.letter}.** Adding it raises ln L by ${tenths(evidence.deltaLogLikelihood)} and improves the BIC by ` +
     `${tenths(evidence.deltaBic)}; its false-alarm probability is ${probability(evidence.falseAlarmProbability)}. ` +
-    `How that probability was obtained: ${escapeMarkdown(evidence.falseAlarmMethod)}. ${shapeSentence(evidence, companion.circular)}`
+    `How that probability was obtained: ${escapeMarkdown(evidence.falseAlarmMethod)}. ${shapeSentence(evidence, companion.circular)}` +
+    (sampled ? bayesSentence(evidence) : '')
   );
 }
 
@@ -56,19 +73,66 @@ function fitParagraph({ fit }: SolutionRecord): string {
   );
 }
 
-function uncertaintyParagraph({ posterior }: SolutionRecord): string {
-  if (posterior === null)
-    return (
-      'Uncertainties come from the curvature of the likelihood at the solution. That is right while the likelihood is close to a Gaussian ' +
-      'there; small eccentricities, jitters near zero and periods longer than the data are not of that kind.'
+/** Both comparisons of a companion; one that is missing says so. */
+function bayesSentence(evidence: Evidence): string {
+  const presence = factorClause(evidence.marginal, 'the companion', 'no companion here');
+  const shape = factorClause(evidence.eccentricity?.marginal ?? null, 'an eccentric orbit', 'a circular one');
+  const parts = [
+    ...(presence === null ? [] : [` With the companion against without it: ${presence}.`]),
+    ...(shape === null ? [] : [` An eccentric orbit against a circular one: ${shape}.`]),
+  ];
+  if (parts.length < 2)
+    parts.push(
+      ` ln B is not given for ${presence === null ? 'its presence' : ''}${presence === null && shape === null ? ' and ' : ''}` +
+        `${shape === null ? 'its eccentricity' : ''}: it could not be computed reliably, or the case leaves no choice.`,
     );
-  const divergences =
-    posterior.divergences === 0 ? 'none of them divergent' : `${posterior.divergences} divergent`;
+  return parts.join('');
+}
+
+/** `ln B = 12.3 ± 0.1, odds of 2 × 10⁵ : 1 for the companion (very strong)`. */
+function factorClause(comparison: MarginalComparison | null, favoured: string, other: string): string | null {
+  if (comparison === null) return null;
+  const side = comparison.logBayesFactor >= 0 ? favoured : other;
   return (
-    `Uncertainties are those of ${posterior.draws} draws from the posterior in ${posterior.chains} chains ` +
-    `(${escapeMarkdown(posterior.method)}), ${divergences}; the largest rank-normalised R̂ is ${posterior.rHatMax.toFixed(3)}, the smallest ` +
-    `effective sample sizes are ${significant(posterior.bulkEssMin, 3)} (bulk) and ${significant(posterior.tailEssMin, 3)} (tails).`
+    `ln B = ${logBayesFactor(comparison, 'markdown')}, odds of ${oddsOf(comparison, 'markdown')} for ${side} ` +
+    `(${strengthOf(comparison.logBayesFactor)})`
   );
+}
+
+function hasFactor({ evidence }: CompanionRecord): boolean {
+  return evidence.marginal !== null || (evidence.eccentricity?.marginal ?? null) !== null;
+}
+
+function uncertaintyParagraphs({ posterior }: SolutionRecord): string[] {
+  if (posterior === null)
+    return [
+      'Uncertainties come from the curvature of the likelihood at the solution. That is right while the likelihood is close to a Gaussian ' +
+        'there; small eccentricities, jitters near zero and periods longer than the data are not of that kind.',
+    ];
+  const { chains, draws, warmup } = posterior;
+  return [
+    `Uncertainties are those of ${draws} draws from the posterior in ${chains} chains (${escapeMarkdown(posterior.method)}), ` +
+      `after ${warmup} draws of warm-up in each chain. ${convergenceSentence(posterior)} ${divergenceSentence(posterior)} ${energySentence(posterior)}`,
+  ];
+}
+
+function convergenceSentence(posterior: PosteriorRecord): string {
+  if (posterior.status === 'converged')
+    return (
+      `The chains have converged: the largest rank-normalised R̂ is ${rHatText(posterior)} (below 1.01), and the smallest effective sample sizes are ` +
+      `${essText(posterior.bulkEssMin)} (bulk) and ${essText(posterior.tailEssMin)} (tails), above 400 (Vehtari et al. 2021).`
+    );
+  const why =
+    posterior.status === 'interrupted'
+      ? 'Sampling was interrupted before the chains agreed'
+      : 'Sampling stopped at the limit of draws before the chains agreed';
+  const remedy =
+    posterior.status === 'interrupted'
+      ? 'Run it again without interruption before citing them.'
+      : 'Run it again with a larger `--draw-limit`, or look whether the data determine all elements.';
+  const missed = missedRequirements(posterior);
+  const numbers = missed.length === 0 ? '' : `: ${listed(missed)}`;
+  return `**${why}**${numbers} (Vehtari et al. 2021). Values stand, but intervals and limits are provisional: they may be too narrow. ${remedy}`;
 }
 
 /** What the search left behind: the highest peak of the last periodogram. */
@@ -86,13 +150,17 @@ function leftoverParagraph(stages: Solved['stages']): string[] {
 
 export const certainty: ReportSection = {
   heading: 'How sure this is',
-  blocks: ({ record, stages }, context) => [
-    ...record.companions.map(evidenceParagraph),
-    ...leftoverParagraph(stages),
-    fitParagraph(record),
-    uncertaintyParagraph(record),
-    'Intervals are central and hold 68.3 % of the probability; sides that differ by less than 10 % of their mean are written as one ± with that mean ' +
-      '(solution.json has both). A limit marked 84 % is the upper end of such an interval.',
-    ...chartBlocks(context, /^periodogram/),
-  ],
+  blocks: ({ record, stages, posterior }, context) => {
+    const sampled = record.posterior !== null;
+    return [
+      ...record.companions.map((companion) => evidenceParagraph(companion, sampled)),
+      ...(record.companions.some(hasFactor) ? [SCALE_SENTENCE] : []),
+      ...leftoverParagraph(stages),
+      fitParagraph(record),
+      ...uncertaintyParagraphs(record),
+      'Intervals are central and hold 68.3 % of the probability; sides that differ by less than 10 % of their mean are written as one ± with that mean ' +
+        `(solution.json has both). ${posterior === null ? 'A limit marked 84 % is the upper end of such an interval.' : 'A limit marked 95 % has 95 % of the draws below it.'}`,
+      ...chartBlocks(context, /^(periodogram|marginals$|pairs-|chains$)/),
+    ];
+  },
 };

@@ -1,11 +1,12 @@
 /** Zero point, jitter and scatter of each instrument. */
+import { keyOf, drawnBoundOf } from '../draws.js';
 import { escapeMarkdown } from '../escape.js';
 import { formatQuantity, significant } from '../numbers.js';
 import { markdownTable, type ReportSection } from './section.js';
 
 export const instruments: ReportSection = {
   heading: 'Instruments',
-  blocks: ({ record }) => [
+  blocks: ({ record, posterior }) => [
     'Each instrument has its own zero point and its own jitter, a noise added in quadrature to the errors of its table. Velocities in m/s.',
     markdownTable(
       ['instrument', 'velocities', 'zero point', 'jitter', 'rms of residuals'],
@@ -13,7 +14,11 @@ export const instruments: ReportSection = {
         escapeMarkdown(instrument.name),
         String(instrument.count),
         formatQuantity(instrument.zeroPoint, 'markdown', { withUnit: false }),
-        formatQuantity(instrument.jitter, 'markdown', { withUnit: false, zeroBounded: true }),
+        formatQuantity(instrument.jitter, 'markdown', {
+          withUnit: false,
+          zeroBounded: true,
+          drawn: drawnBoundOf(posterior, keyOf.jitter(instrument.name)),
+        }),
         significant(instrument.rms, 3),
       ]),
       [1, 2, 3, 4],

@@ -1,5 +1,7 @@
 /** Program, command, seed, inputs with checksums, and what lies in the folder. */
+import type { Solved } from '../../solving/types.js';
 import { markdownCode } from '../escape.js';
+import { thinningOf } from '../posterior-table.js';
 import { markdownTable, type ReportSection } from './section.js';
 
 /** What the files of a dossier are for; a name that ends in `/` stands for a folder. */
@@ -9,9 +11,19 @@ const FILE_NOTES: readonly (readonly [string, string])[] = [
   ['elements.csv', 'every number of the solution at full precision, one a row'],
   ['residuals.csv', 'each velocity with model and residual, and the file and line it came from'],
   ['model.csv', 'the model on a fine grid of times, in all and companion by companion'],
+  ['posterior.csv', 'the draws of the posterior, one a row: chain, draw, ln of the density, and every free quantity by its path in solution.json'],
   ['charts/', 'the charts, as PNG at 300 dots per inch and as SVG'],
   ['run.json', 'date, duration and machine: the only file that differs when the run is repeated'],
-];
+]; // prettier-ignore
+
+/** Said of a table that does not hold every draw. */
+function thinnedNote({ posterior }: Solved, name: string): string {
+  if (name !== 'posterior.csv' || posterior === null) return '';
+  const step = thinningOf(posterior);
+  return step === 1
+    ? ''
+    : ` (one draw in ${step}, evenly, to keep the file small; the numbers rest on all draws)`;
+}
 
 /** The command as one would type it again. */
 export function commandLine(command: readonly string[]): string {
@@ -22,15 +34,17 @@ export function commandLine(command: readonly string[]): string {
 
 export const making: ReportSection = {
   heading: 'How this was made',
-  blocks: ({ record }, context) => {
-    const { provenance } = record;
+  blocks: (solved, context) => {
+    const { provenance } = solved.record;
     const present = FILE_NOTES.filter(([name]) =>
       name.endsWith('/') ? context.files.some((file) => file.startsWith(name)) : context.files.includes(name),
     );
     return [
       `Made by ${provenance.program} ${provenance.version} (Node ${provenance.node}) with seed ${provenance.seed}:`,
       markdownCode(commandLine(provenance.command)),
-      'The same program, inputs, options and seed give the same files again, byte for byte.',
+      solved.record.posterior?.status === 'interrupted'
+        ? 'The sampling was interrupted; how far it had come depends on the moment, so that a repetition need not give the same files.'
+        : 'The same program, inputs, options and seed give the same files again, byte for byte.',
       markdownTable(
         ['table', 'rows', 'used', 'SHA-256'],
         provenance.inputs.map((input) => [
@@ -42,7 +56,7 @@ export const making: ReportSection = {
         [1, 2],
       ),
       'In this folder:',
-      present.map(([name, note]) => `- \`${name}\`: ${note}`).join('\n'),
+      present.map(([name, note]) => `- \`${name}\`: ${note}${thinnedNote(solved, name)}`).join('\n'),
     ];
   },
 };

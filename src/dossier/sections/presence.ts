@@ -1,20 +1,23 @@
 /** The companions and their orbits, in sentences and in one table each. */
 import type { CompanionRecord, Quantity, SolutionRecord, Solved } from '../../solving/types.js';
+import { keyOf, drawnBoundOf } from '../draws.js';
 import { escapeMarkdown } from '../escape.js';
-import { formatProbability, formatQuantity, isUpperLimit, significant } from '../numbers.js';
+import { formatProbability, formatQuantity, isUpperLimit, significant, type DrawnBound } from '../numbers.js';
+import { modeText, shownModes } from '../posterior-words.js';
 import {
   counted,
   DERIVED_ORDER,
   DERIVED_TITLES,
   ELEMENT_ORDER,
   ELEMENT_TITLES,
+  listed,
   type Title,
 } from '../titles.js';
 import { verdictOf } from '../verdict.js';
 import { chartBlocks, markdownTable, type ReportSection } from './section.js';
 
-function shown(quantity: Quantity, title?: Title): string {
-  return formatQuantity(quantity, 'markdown', { zeroBounded: title?.zeroBounded === true });
+function shown(quantity: Quantity, title?: Title, drawn: DrawnBound | null = null): string {
+  return formatQuantity(quantity, 'markdown', { zeroBounded: title?.zeroBounded === true, drawn });
 }
 
 function overview({ record, velocities }: Solved): string {
@@ -32,12 +35,13 @@ function overview({ record, velocities }: Solved): string {
   );
 }
 
-function orbitSentence(companion: CompanionRecord, star: SolutionRecord['star']): string {
-  const { elements, derived } = companion;
+function orbitSentence(companion: CompanionRecord, { record: { star }, posterior }: Solved): string {
+  const { letter, elements, derived } = companion;
+  const drawn = drawnBoundOf(posterior, keyOf.element(letter, 'eccentricity'));
   const shape = companion.circular
     ? 'on a circular orbit'
-    : isUpperLimit(elements.eccentricity)
-      ? `on an orbit whose eccentricity is ${shown(elements.eccentricity, { words: '', zeroBounded: true })}`
+    : isUpperLimit(elements.eccentricity, drawn)
+      ? `on an orbit whose eccentricity is ${shown(elements.eccentricity, ELEMENT_TITLES.eccentricity, drawn)}`
       : `on an eccentric orbit, e = ${shown(elements.eccentricity)}`;
   const heavy = derived.mass.value === null ? derived.minimumMass : derived.mass;
   const massName = derived.mass.value === null ? 'minimum mass (m sin i)' : 'mass';
@@ -46,16 +50,20 @@ function orbitSentence(companion: CompanionRecord, star: SolutionRecord['star'])
       ? `Its ${massName} is not known${heavy.why === undefined ? '' : `: ${escapeMarkdown(heavy.why)}`}.`
       : `Its ${massName} is ${shown(heavy)} for a star of ${shown(star.mass)}.`;
   return (
-    `Companion ${companion.letter} goes round in ${shown(elements.period)} ${shape}, and moves the star ` +
+    `Companion ${letter} goes round in ${shown(elements.period)} ${shape}, and moves the star ` +
     `with a semi-amplitude of ${shown(elements.semiAmplitude)}. ${mass}`
   );
 }
 
-function quantitiesTable(companion: CompanionRecord): string {
+function quantitiesTable(companion: CompanionRecord, { posterior }: Solved): string {
   const rows = [
     ...ELEMENT_ORDER.map((key) => [
       ELEMENT_TITLES[key].words,
-      shown(companion.elements[key], ELEMENT_TITLES[key]),
+      shown(
+        companion.elements[key],
+        ELEMENT_TITLES[key],
+        drawnBoundOf(posterior, keyOf.element(companion.letter, key)),
+      ),
     ]),
     ...DERIVED_ORDER.filter((key) => companion.derived[key].value !== null).map((key) => [
       DERIVED_TITLES[key].words,
@@ -111,17 +119,28 @@ function neighbourSentences(record: SolutionRecord): string[] {
   });
 }
 
+/** A reader who stops after the first paragraph must not take the period for settled. */
+function modesSentence({ posterior }: SolutionRecord): string[] {
+  const [, ...others] = shownModes(posterior);
+  if (others.length === 0) return [];
+  const texts = others.map((mode) => modeText(mode, 'markdown'));
+  return [
+    `**The data leave more than one period.** The one given here is the most probable; beside it ${listed(texts)} share the probability.`,
+  ];
+}
+
 export const presence: ReportSection = {
   heading: 'What is there',
   blocks: (solved, context) => {
     const { record } = solved;
     return [
       overview(solved),
+      ...modesSentence(record),
       ...chartBlocks(context, /^velocities$/),
       ...record.companions.flatMap((companion) => [
         `### Companion ${companion.letter}`,
-        orbitSentence(companion, record.star),
-        quantitiesTable(companion),
+        orbitSentence(companion, solved),
+        quantitiesTable(companion, solved),
         ...missing(companion),
         ...chartBlocks(context, new RegExp(`^(folded|orbit)-${companion.letter}$`)),
       ]),

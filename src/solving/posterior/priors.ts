@@ -58,9 +58,14 @@ export function priorScales(
   };
 }
 
+/** Three digits, never with an exponent. */
+function short(value: number): string {
+  return value < 100 ? value.toPrecision(3) : value.toFixed(0);
+}
+
 /** The priors in sentences, for the report. */
 export function priorSentences(scales: PriorScales, theCase: Case): string[] {
-  const period = `period log-uniform between ${scales.shortestPeriodDays.toPrecision(3)} d and ${scales.longestPeriodDays.toPrecision(3)} d`;
+  const period = `period log-uniform between ${short(scales.shortestPeriodDays)} d and ${short(scales.longestPeriodDays)} d`;
   const listed =
     typeof theCase.companions === 'object' &&
     theCase.companions.some(({ elements }) => Object.keys(elements).length > 0);

@@ -144,6 +144,7 @@ export async function sampleMode(
       stream: options.stream + chain,
     })),
   );
+  options.onProgress(0);
   const outputs: ChainOutput[][] = Array.from({ length: CONVERGENCE.chains }, () => []);
   let judgement: Judgement = { rHatMax: Infinity, bulkEssMin: 0, tailEssMin: 0 };
   let chains: Float64Array[] = [];
@@ -155,14 +156,15 @@ export async function sampleMode(
       interrupted = true;
       break;
     }
-    const batch = await pool.draw(CONVERGENCE.batch);
+    const count = Math.min(CONVERGENCE.batch, options.limit - draws);
+    const batch = await pool.draw(count);
     batch.forEach((output, chain) => outputs[chain]!.push(output));
-    draws += CONVERGENCE.batch;
+    draws += count;
     chains = outputs.map((parts) => joined(parts.map((part) => part.positions)));
     judgement = judge(density, chains);
     const ess = Math.min(judgement.bulkEssMin, judgement.tailEssMin);
     converged = judgement.rHatMax < CONVERGENCE.largestRHat && ess > CONVERGENCE.smallestEss;
-    options.onProgress(Math.min(1, ess / CONVERGENCE.smallestEss));
+    options.onProgress(Math.min(1, Math.max(ess / CONVERGENCE.smallestEss, draws / options.limit)));
   }
   const energies = outputs.map((parts) => joined(parts.map((part) => part.energies)));
   const evidence = evidenceFromDraws(

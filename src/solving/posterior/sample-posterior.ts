@@ -127,7 +127,13 @@ export async function samplePosterior(
     tailEssMin: sample.tailEssMin,
     ebfmiMin: sample.ebfmiMin,
     divergences: sample.divergences,
-    status: sample.converged ? 'converged' : sample.interrupted ? 'interrupted' : 'draw-limit',
+    // Modes that were not reached leave the weights incomplete, however well the first one was sampled.
+    status:
+      samples.length < fits.length || sample.interrupted
+        ? 'interrupted'
+        : sample.converged
+          ? 'converged'
+          : 'draw-limit',
     logEvidence: sample.logEvidence,
     logEvidenceError: sample.logEvidenceError,
     modes: order.map((i) => ({
