@@ -40,8 +40,11 @@ export function stageRecord(
 ): SearchStage {
   const { grid, setting } = search;
   const peaks = reportedPeaks(search, spanDays);
+  // A shape is worth a mark when it gains more than a sinusoid with as many parameters could, and noise seldom does.
   const beats =
-    shape !== null && shape.gain > (peaks[0]?.deltaLogLikelihood ?? 0) + Math.log(setting.dataCount);
+    shape !== null &&
+    shape.gain > (peaks[0]?.deltaLogLikelihood ?? 0) + Math.log(setting.dataCount) &&
+    shapeFalseAlarm(shape.gain, setting) < LEVELS[0];
   return {
     title:
       companionsFitted === 0
