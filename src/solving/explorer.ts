@@ -21,6 +21,7 @@ const DRIFT_MARGIN = 4;
 const LONGEST_FIT = 20;
 const LARGEST_AMPLITUDE_MPS = 1e7;
 const PEAKS = 14;
+/** Starts taken from the scan of eccentric shapes. */
 const SHAPES = 14;
 /** Of all rough fits, this many are fitted thoroughly. */
 const FINALISTS = 5;
@@ -77,7 +78,7 @@ export class Explorer {
   }
 
   /** Search for one more companion on top of a fit. */
-  search(planned: PlannedFit, range: SearchRange = this.range, withShapes = true): StageSearch {
+  search(planned: PlannedFit, range: SearchRange = this.range, shapes: number = SHAPES): StageSearch {
     const { grid } = range;
     const key = `${grid.startPerDay} ${grid.stepPerDay} ${grid.count}`;
     let periodogram = this.#periodograms.get(key);
@@ -87,7 +88,7 @@ export class Explorer {
     }
     return searchStage(planned.fit, periodogram, range.spanDays, {
       peaks: PEAKS,
-      shapes: withShapes ? SHAPES : 0,
+      shapes,
     });
   }
 

@@ -19,6 +19,9 @@ import { backgroundOf, type StageSearch } from './search-stage.js';
 export const ACCEPTED = { falseAlarmProbability: 1e-3, deltaBic: 10 } as const;
 export const CANDIDATE = { falseAlarmProbability: 1e-2, deltaBic: 5 } as const;
 
+/** A search by sinusoids alone. */
+const NO_SHAPES = 0;
+
 /** Finalists of a stage that are weighed before the search ends. */
 const QUESTIONED = 4;
 
@@ -124,7 +127,7 @@ function nextAddition(
   if (base.plan.drift > 0 && explorer.drifts.includes(0)) {
     // A drift may have swallowed part of a long period: look without it too, and let the BIC decide.
     const bare = explorer.fit({ ...base.plan, drift: 0 }, explorer.portable(base));
-    fits.push(...explorer.bestAddition(bare, explorer.search(bare, range, false), choice));
+    fits.push(...explorer.bestAddition(bare, explorer.search(bare, range, NO_SHAPES), choice));
   }
   fits = fits.sort(byBic);
   const top = fits[0];
@@ -229,8 +232,11 @@ function questionEarlierChoices(
     for (let c = 0; c < best.plan.companions.length - (pass === 0 ? 1 : 0); c++) {
       if (listed[c] !== undefined || best.plan.companions.length < 2) continue;
       const others = explorer.without(best, c);
-      const withShapes = explorer.portable(best).companions[c]!.eccentricity > 0.3;
-      const fits = explorer.bestAddition(others, explorer.search(others, explorer.range, withShapes), null);
+      const isEccentric = explorer.portable(best).companions[c]!.eccentricity > 0.3;
+      const search = isEccentric
+        ? explorer.search(others)
+        : explorer.search(others, explorer.range, NO_SHAPES);
+      const fits = explorer.bestAddition(others, search, null);
       const top = fits[0];
       if (top === undefined) continue;
       const settled = explorer.settleStructure(top);
