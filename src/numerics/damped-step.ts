@@ -157,7 +157,8 @@ export class DampedStepEngine {
   }
 
   /**
-   * Adds to `step` its second-order part (geodesic acceleration, Transtrum & Sethna 2012), which follows a curved valley.
+   * Adds to `step` its second-order part (geodesic acceleration, Transtrum & Sethna 2012, arXiv:1201.5885, cited from memory),
+   * which follows a curved valley.
    *
    * @param residuals - at the present point; `jacobian` likewise; `ahead` - residuals at `probePoint`
    * @returns twice the length of the second-order part over that of the step: above about 0.75 the step goes too far for

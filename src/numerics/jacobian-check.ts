@@ -24,7 +24,8 @@ const HALVINGS = 8;
  *   large as the mistake for a wrong one (NaN derivatives count as infinitely wrong)
  * @throws RangeError when the model cannot be evaluated at the point, or beside it with any of the steps
  *
- * Method: central differences extrapolated to step zero (Ridders 1982), the most stable value per element.
+ * Method: central differences extrapolated to step zero (Ridders 1982, Advances in Engineering Software 4, 75), the most
+ * stable value per element.
  */
 export function checkJacobian(
   problem: LeastSquaresProblem,

@@ -66,8 +66,8 @@ const SMALLEST_RELATIVE_STEP = 2e-16;
  * @returns where it stopped and why; deterministic; never throws for numerical reasons
  *
  * Accuracy: see test/reference/nist/digits.md (27 certified problems, two starts each).
- * Method: Levenberg-Marquardt in coordinates of unit curvature, damping controlled by the gain ratio (Nielsen 1999), steps
- * bent to second order while they are long.
+ * Method: Levenberg-Marquardt in coordinates of unit curvature, damping controlled by the gain ratio (Nielsen 1999,
+ * report IMM-REP-1999-05, Technical University of Denmark, cited from memory), steps bent to second order while they are long.
  */
 export function minimiseLeastSquares(
   problem: LeastSquaresProblem,

@@ -9,7 +9,8 @@ export interface ScalarMinimum {
 const GOLDEN = (3 - Math.sqrt(5)) / 2;
 
 /**
- * A local minimum between two bounds, by Brent's combination of parabolas and golden sections (Brent 1973).
+ * A local minimum between two bounds, by Brent's combination of parabolas and golden sections (Brent 1973,
+ * Algorithms for Minimization without Derivatives, Prentice-Hall).
  *
  * @param f - finite or +Infinity everywhere between the bounds
  * @param lower - smaller bound; `upper` - larger bound, both finite

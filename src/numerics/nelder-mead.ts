@@ -17,7 +17,8 @@ export interface NelderMeadResult {
 }
 
 /**
- * Nelder & Mead 1965 with the dimension-dependent coefficients of Gao & Han 2012, restarted.
+ * Nelder & Mead 1965 (Computer Journal 7, 308) with the dimension-dependent coefficients of Gao & Han 2012 (Computational
+ * Optimization and Applications 51, 259), restarted. Both cited from memory.
  *
  * @param f - called with an array that must not be kept; NaN counts as +Infinity
  * @param start - length p; not modified

@@ -57,7 +57,7 @@ export class RandomStream {
     return a + (b - a) * this.uniform();
   }
 
-  /** Normal with mean 0 and variance 1 (polar method, Marsaglia & Bray 1964). */
+  /** Normal with mean 0 and variance 1 (polar method, Marsaglia & Bray 1964, SIAM Review 6, 260, cited from memory). */
   normal(): number {
     if (this.spareNormal !== null) {
       const spare = this.spareNormal;

@@ -39,8 +39,8 @@ export const LARGEST_CASE_BYTES = 1e6;
  * @throws InputDataError with all problems, each with line, column and key
  */
 export async function readCase(path: string): Promise<Case> {
-  const { text } = await readTextFile(path, LARGEST_CASE_BYTES);
-  return parseCase(text, path);
+  const { text, sha256 } = await readTextFile(path, LARGEST_CASE_BYTES);
+  return { ...parseCase(text, path), sha256 };
 }
 
 /** What `readCase` does once the file is read. @throws InputDataError with all problems of the text */

@@ -34,33 +34,8 @@ export function readLabel(label: string): ReadLabel {
 }
 
 /** Velocity names of the trade, best first. */
-const VELOCITY_WORDS = [
-  'rv',
-  'vrad',
-  'radialvelocity',
-  'radialvel',
-  'radvel',
-  'mnvel',
-  'velocity',
-  'vel',
-  'vr',
-  'rvel',
-  'rvs',
-];
-const ERROR_WORDS = [
-  'err',
-  'error',
-  'sigma',
-  'sig',
-  'unc',
-  'uncertainty',
-  'e',
-  'errvel',
-  'svrad',
-  'srv',
-  'std',
-  'sd',
-];
+const VELOCITY_WORDS = ['rv', 'vrad', 'radialvelocity', 'radialvel', 'velocity', 'vel', 'vr', 'rvel', 'rvs'];
+const ERROR_WORDS = ['err', 'error', 'sigma', 'sig', 'unc', 'uncertainty', 'e', 'srv', 'std', 'sd'];
 const INSTRUMENT_WORDS = [
   'instrument',
   'inst',

@@ -172,6 +172,8 @@ export interface MockPlan {
 export interface Case {
   /** Path of the case file, `null` when made from bare tables. */
   readonly path: string | null;
+  /** Checksum of the case file, when it was read from one. */
+  readonly sha256?: string;
   readonly target: string;
   readonly star: {
     readonly massSolar: Measured | null;

@@ -12,7 +12,7 @@ export function assumptionsOf(
   const sentences = [
     'Noise is Gaussian and without correlation in time; where nights hold several velocities, a companion must also be there when each night counts once.',
     'The companions move on undisturbed Keplerian orbits: their pulls on each other are neglected.',
-    `The reported point maximises the likelihood${priors > 0 ? ' times the Gaussian priors stated in the case' : ', with a flat density in every element'}; orbits whose periastron lies inside the star are excluded.`,
+    `The reported point maximises the likelihood${priors > 0 ? ' times the Gaussian priors stated in the case' : ', whatever the priors of the posterior'}; orbits whose periastron lies inside the star are excluded.`,
     source === 'posterior'
       ? 'Uncertainties are those of the posterior; the reported point is the maximum of the likelihood, not a mean.'
       : source === 'none'

@@ -91,7 +91,10 @@ export function describeSolution(
       node: making.provenance.node,
       seed: making.seed,
       command: making.provenance.command,
-      inputs: velocities.tables.map(({ path, sha256, rows, used }) => ({ path, sha256, rows, used })),
+      inputs: [
+        ...caseInput(theCase),
+        ...velocities.tables.map(({ path, sha256, rows, used }) => ({ path, sha256, rows, used })),
+      ],
     },
   };
   const { timesDays, weights } = backgroundOf(best.fit);
@@ -104,6 +107,11 @@ export function describeSolution(
     window: windowFunction(timesDays, weights, spanDays),
     posterior: posterior?.draws(sampled, letters) ?? null,
   };
+}
+
+/** The case file among the inputs; it has no rows. */
+function caseInput({ path, sha256 }: Case): SolutionRecord['provenance']['inputs'] {
+  return path === null || sha256 === undefined ? [] : [{ path, sha256, rows: 0, used: 0 }];
 }
 
 function withMarginals(record: CompanionRecord, marginals: CompanionMarginals | null): CompanionRecord {

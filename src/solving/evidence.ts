@@ -5,6 +5,7 @@ import { reportedValues } from './elements-report.js';
 import type { Explorer, PlannedFit } from './explorer.js';
 import { powerOfGain } from './false-alarm.js';
 import { evidenceFromFits } from './find-companions.js';
+import { gainWithNoiseFree } from './noise-free-gain.js';
 import { permutationFalseAlarm, permutedMaxima } from './permutations.js';
 import { centralInterval } from './quantities.js';
 import type { Evidence } from './types.js';
@@ -31,8 +32,7 @@ export function evidenceOf(
     best,
     variants,
   );
-  const circularGain =
-    variants.circular === null ? 0 : variants.circular.fit.logLikelihood - base.fit.logLikelihood;
+  const circularGain = gainWithNoiseFree(base, variants.circular);
   const { permutations, seed } = options;
   const permuted =
     permutations > 0

@@ -11,6 +11,7 @@ import {
   weightedVariance,
   type FalseAlarmSetting,
 } from './false-alarm.js';
+import { gainWithNoiseFree } from './noise-free-gain.js';
 import { nightlySupport } from './nightly.js';
 import { searchRange, type SearchRange } from './search-range.js';
 import { backgroundOf, type StageSearch } from './search-stage.js';
@@ -185,12 +186,14 @@ export function evidenceFromFits(
   variants: { readonly circular: PlannedFit | null; readonly eccentric: PlannedFit | null },
 ): Omit<Addition, 'planned'> {
   const setting = falseAlarmSettingOf(explorer, base);
-  const gain = (planned: PlannedFit | null): number =>
-    planned === null ? 0 : planned.fit.logLikelihood - base.fit.logLikelihood;
   const every = {
-    deltaLogLikelihood: gain(top),
+    deltaLogLikelihood: top.fit.logLikelihood - base.fit.logLikelihood,
     deltaBic: base.fit.bic - top.fit.bic,
-    falseAlarmProbability: sharedFalseAlarm(gain(variants.circular), gain(variants.eccentric), setting),
+    falseAlarmProbability: sharedFalseAlarm(
+      gainWithNoiseFree(base, variants.circular),
+      gainWithNoiseFree(base, variants.eccentric),
+      setting,
+    ),
     countedByNight: false,
   };
   const nightly = nightlySupport(explorer, base, top);
@@ -198,8 +201,7 @@ export function evidenceFromFits(
   const nightlyGain = (planned: PlannedFit | null): number =>
     planned === null || planned.fit.status === 'failed'
       ? 0
-      : nightly.explorer.fit(planned.plan, explorer.portable(planned)).fit.logLikelihood -
-        nightly.base.fit.logLikelihood;
+      : gainWithNoiseFree(nightly.base, nightly.explorer.fit(planned.plan, explorer.portable(planned)));
   const alarm = sharedFalseAlarm(
     nightlyGain(variants.circular),
     nightlyGain(variants.eccentric),

@@ -53,7 +53,7 @@ export class ModelBuilder {
       // One or two velocities say nothing of their own scatter: the zero point absorbs one.
       let count = 0;
       for (const instrument of data.instrumentOf) if (instrument === index) count++;
-      return { lowMps: 0, highMps: count < 3 ? 0 : LARGEST_JITTER_MPS, prior: null };
+      return { lowMps: 0, highMps: count < 3 ? 0 : LARGEST_JITTER_MPS, prior: null, isStated: false };
     });
   }
 
@@ -146,10 +146,15 @@ export function portableFrom(
 function jitterSetting(choice: ElementChoice): JitterSetting {
   switch (choice.kind) {
     case 'fixed':
-      return { lowMps: choice.value, highMps: choice.value, prior: null };
+      return { lowMps: choice.value, highMps: choice.value, prior: null, isStated: true };
     case 'range':
-      return { lowMps: choice.low, highMps: choice.high, prior: null };
+      return { lowMps: choice.low, highMps: choice.high, prior: null, isStated: true };
     case 'prior':
-      return { lowMps: 0, highMps: LARGEST_JITTER_MPS, prior: { centre: choice.value, sigma: choice.sigma } };
+      return {
+        lowMps: 0,
+        highMps: LARGEST_JITTER_MPS,
+        prior: { centre: choice.value, sigma: choice.sigma },
+        isStated: true,
+      };
   }
 }

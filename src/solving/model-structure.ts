@@ -8,6 +8,8 @@ export interface JitterSetting {
   readonly lowMps: number;
   readonly highMps: number;
   readonly prior: { readonly centre: number; readonly sigma: number } | null;
+  /** The case says something about this jitter. */
+  readonly isStated: boolean;
 }
 
 /** What is fitted: companions (with their parametrisations), drift, zero points and jitters. */

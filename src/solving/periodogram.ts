@@ -1,6 +1,6 @@
 /**
  * Least-squares periodogram with every linear part of the model (a mean per instrument, drift, companions) refitted at
- * each frequency [ZechmeisterKuerster2009, Baluev2009], evaluated on a uniform grid through fast trigonometric sums.
+ * each frequency [ZechmeisterKuerster2009, Baluev2008], evaluated on a uniform grid through fast trigonometric sums.
  */
 import { NonuniformTransform } from '../numerics/nonuniform-fft.js';
 import type { LinearBackground } from './linear-background.js';

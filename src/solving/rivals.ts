@@ -12,6 +12,8 @@ import type { Rival } from './types.js';
 /** Refits whose ln L falls short by more than this are dismissed. */
 const DISMISSED_BELOW = -12;
 const LARGEST_COUNT = 8;
+/** A likelihood ratio below e^3 (1 in 20) is no ground for preferring one period. */
+export const CLOSE_RIVAL = -3;
 
 export interface RivalSearch {
   readonly rivals: readonly Rival[];

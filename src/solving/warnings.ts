@@ -1,6 +1,8 @@
 /** What the user must know before believing a solution. */
 import type { Case, VelocitySet } from '../observations/types.js';
 import type { Explorer, PlannedFit } from './explorer.js';
+import { ACCEPTED } from './find-companions.js';
+import { CLOSE_RIVAL } from './rivals.js';
 import { YEAR_PER_DAY } from './window-function.js';
 import type { CompanionRecord, InstrumentRecord } from './types.js';
 
@@ -82,14 +84,18 @@ const sharedSignals: Check = ({ explorer, companions }) =>
 const closeRivals: Check = ({ companions }) =>
   companions.flatMap(({ letter, rivals }) => {
     const top = rivals[0];
-    return top !== undefined && top.deltaLogLikelihood > -5
+    return top !== undefined && top.deltaLogLikelihood > CLOSE_RIVAL
       ? [{ code: 'rival-period', message: `companion ${letter}: a period of ${days(top.period)} (${top.kind}) fits nearly as well (Δ ln L ${top.deltaLogLikelihood.toFixed(1)})` }]
       : [];
   }); // prettier-ignore
 
 const weakCompanions: Check = ({ companions }) =>
   companions
-    .filter(({ evidence }) => evidence.falseAlarmProbability > 1e-3 || evidence.deltaBic < 10)
+    .filter(
+      ({ evidence }) =>
+        evidence.falseAlarmProbability > ACCEPTED.falseAlarmProbability ||
+        evidence.deltaBic < ACCEPTED.deltaBic,
+    )
     .map(({ letter, evidence }) => ({
       code: 'companion-not-supported',
       message: `companion ${letter} was asked for but does not clear the thresholds (false-alarm probability ${evidence.falseAlarmProbability.toPrecision(2)}, ΔBIC ${evidence.deltaBic.toFixed(1)})`,
@@ -128,6 +134,35 @@ const largeJitters: Check = ({ velocities, instruments }) =>
       : [];
   }); // prettier-ignore
 
+/** With jitters that cannot grow, unexplained scatter would pass for precision. */
+const excessScatter: Check = ({ best, velocities }) => {
+  const { problem, point } = best.fit;
+  if (!problem.structure.jitters.some((jitter) => jitter.isStated)) return [];
+  const prediction = problem.predictionAt(point.parameters)!;
+  const chiSquare = velocities.velocitiesMps.reduce((sum, velocity, i) => {
+    const variance = velocities.sigmasMps[i]! ** 2 + point.jittersMps[velocities.instrumentOf[i]!]! ** 2;
+    return sum + (velocity - prediction[i]!) ** 2 / variance;
+  }, 0);
+  const degrees = velocities.count - problem.freeCount;
+  return degrees > 4 && chiSquare > 1.8 * degrees
+    ? [{ code: 'scatter-exceeds-noise', message: `χ² is ${chiSquare.toFixed(0)} for ${degrees} degrees of freedom: errors and stated jitters are too small for these residuals, so uncertainties and evidence are too good; leave the jitter free` }]
+    : [];
+}; // prettier-ignore
+
+/** A harmonic of another companion may be its eccentricity. */
+const harmonics: Check = ({ companions }) =>
+  companions.flatMap((outer) =>
+    companions
+      .filter((inner) => inner !== outer)
+      .flatMap((inner) => {
+        const ratio = outer.elements.period.value! / inner.elements.period.value!;
+        const order = [2, 3].find((whole) => Math.abs(ratio / whole - 1) < 0.01);
+        return order !== undefined && outer.circular
+          ? [{ code: 'harmonic-period', message: `companion ${inner.letter} has ${order === 2 ? 'half' : 'a third of'} the period of ${outer.letter}, whose orbit is taken as circular: an eccentric orbit of ${outer.letter} may be the reason` }]
+          : [];
+      }),
+  ); // prettier-ignore
+
 const cutGrid: Check = ({ explorer }) =>
   explorer.range.cut
     ? [{ code: 'search-cut', message: `the observations span ${explorer.range.spanDays.toFixed(0)} d, too long to search below ${days(explorer.range.shortestPeriodDays)} at full resolution: state a period range, and check the dates` }]
@@ -153,6 +188,8 @@ const CHECKS: readonly Check[] = [
   terrestrialPeriods,
   largestPhaseGap,
   largeJitters,
+  excessScatter,
+  harmonics,
 ];
 
 export function warningsOf(given: WarningInput): Warning[] {

@@ -6,8 +6,8 @@ const rows = '2459000.5,1,2\n2459001.5,3,4\n';
 describe('recognition of columns', () => {
   it.each([
     ['BJD', 'RV', 'e_RV'],
-    ['time', 'vrad', 'svrad'],
-    ['t', 'mnvel', 'errvel'],
+    ['time', 'vrad', 'sigma'],
+    ['t', 'vel', 'err'],
     ['JDB', 'velocity', 'uncertainty'],
     ['HJD', 'radial velocity', 'sigma'],
     ['date', 'vel', 'sig'],

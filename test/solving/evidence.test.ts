@@ -198,7 +198,7 @@ describe('false-alarm probability by permutation', () => {
     expect(permutationFalseAlarm(maxima, 0)).toMatchObject({ probability: 1 });
     const { explorer } = explorerFor(narrow, data(84, 0, 15));
     const base = explorer.fit({ companions: [], drift: 0 }, explorer.builder.emptyPoint());
-    const { power } = explorer.search(base, explorer.range, false).peaks[0]!;
+    const { power } = explorer.search(base, explorer.range, 0).peaks[0]!;
     expect(permutationFalseAlarm(permutedMaxima(explorer, base, 60, 5), power)).toMatchObject({
       exceeding: 0,
     });

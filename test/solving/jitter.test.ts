@@ -6,7 +6,7 @@ import type { JitterSetting } from '../../src/solving/model-structure.js';
 import fits from '../reference/fits/fits.json' with { type: 'json' };
 import { expectWithin } from '../support/expect-within.js';
 
-const FREE: JitterSetting = { lowMps: 0, highMps: 1e7, prior: null };
+const FREE: JitterSetting = { lowMps: 0, highMps: 1e7, prior: null, isStated: false };
 
 function dataOf(sigmas: readonly number[], instrumentOf: readonly number[] = []): VelocityData {
   return {
@@ -84,9 +84,9 @@ describe('updateJitters', () => {
       why: 'closed form',
     });
     const bounded = best(data, residuals, [
-      { lowMps: 0, highMps: 2, prior: null },
-      { lowMps: 7, highMps: 7, prior: null },
-      { lowMps: 0.4, highMps: 5, prior: null },
+      { lowMps: 0, highMps: 2, prior: null, isStated: false },
+      { lowMps: 7, highMps: 7, prior: null, isStated: false },
+      { lowMps: 0.4, highMps: 5, prior: null, isStated: false },
     ]);
     expect([...bounded]).toEqual([2, 7, 0.4]);
   });

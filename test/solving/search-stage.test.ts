@@ -73,7 +73,7 @@ describe('a stage of the search', () => {
   it('refits zero points, drift and the companion already found at every frequency (dense solve)', () => {
     const { explorer, base, set } = withFirstCompanion();
     const columns = columnsOf(explorer, base, set);
-    const search = explorer.search(base, explorer.range, false);
+    const search = explorer.search(base, explorer.range, 0);
     const { timesDays, weights, residuals } = search.background;
     weights.forEach((weight, i) => {
       const jitter = base.fit.point.jittersMps[set.instrumentOf[i]!]!;
@@ -100,7 +100,7 @@ describe('a stage of the search', () => {
 
   it('has the second companion as its strongest peak; every peak is a maximum, off the grid, strongest first', () => {
     const { explorer, base } = withFirstCompanion();
-    const search = explorer.search(base, explorer.range, false);
+    const search = explorer.search(base, explorer.range, 0);
     const [top] = search.peaks;
     expectWithin(1 / top!.frequencyPerDay, 11.3, { abs: 0.05, unit: 'd', why: 'a tenth of 1/span' });
     expectWithin(top!.amplitudeMps, 12, { abs: 2, unit: 'm/s', why: 'about four times sigma sqrt(2/n)' });
@@ -121,7 +121,7 @@ describe('a stage of the search', () => {
 
   it('the start of a peak is the circular orbit that takes exactly its share of chi square away', () => {
     const { explorer, base, set } = withFirstCompanion();
-    const search = explorer.search(base, explorer.range, false);
+    const search = explorer.search(base, explorer.range, 0);
     const columns = columnsOf(explorer, base, set);
     const { timesDays, weights, residuals, chiSquare } = search.background;
     for (const { start, power } of search.peaks.slice(0, 5)) {

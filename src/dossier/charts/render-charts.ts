@@ -1,9 +1,12 @@
 /** All charts of a solution, drawn and encoded. */
 import type { SearchStage, Solved, WindowFunction } from '../../solving/types.js';
+import { chainsCharts } from './chains-chart.js';
 import type { ChartDrawing, ChartFile } from './chart-drawing.js';
 import { foldedCharts } from './folded-chart.js';
+import { marginalsCharts } from './marginals-chart.js';
 import { orbitCharts } from './orbit-chart.js';
 import { loadPainter } from './paint.js';
+import { pairsCharts } from './pairs-chart.js';
 import { periodogramChart, periodogramCharts } from './periodogram-chart.js';
 import { velocitiesChart } from './velocities-chart.js';
 
@@ -13,6 +16,9 @@ const CHARTS: readonly ((solved: Solved) => readonly ChartDrawing[])[] = [
   foldedCharts,
   periodogramCharts,
   orbitCharts,
+  marginalsCharts,
+  pairsCharts,
+  chainsCharts,
 ];
 
 /** Describes all charts of a solution; pure, draws nothing and loads nothing heavy. */

@@ -44,7 +44,7 @@ function shapeSentence(evidence: Evidence, circular: boolean): string {
     !circular || shape.eccentricFit === null
       ? ''
       : ` The eccentric version has e = ${formatQuantity(shape.eccentricFit.eccentricity, 'markdown')} and an argument of ` +
-        `periastron of ${formatQuantity(shape.eccentricFit.argumentOfPeriastron, 'markdown')}; the data do not pay for it, so the circular orbit is reported.`;
+        `periastron of ${formatQuantity(shape.eccentricFit.argumentOfPeriastron, 'markdown')}; ${shape.deltaBic > 0 ? 'the circular orbit is reported because it was asked for' : 'the data do not pay for it, so the circular orbit is reported'}.`;
   return `${balance}${lucySweeney}.${other}`;
 }
 

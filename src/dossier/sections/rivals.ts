@@ -1,10 +1,8 @@
 /** Other periods that explain the data nearly as well. */
+import { CLOSE_RIVAL } from '../../solving/rivals.js';
 import { escapeMarkdown } from '../escape.js';
 import { significant, typographicMinus } from '../numbers.js';
 import { markdownTable, type ReportSection } from './section.js';
-
-/** A likelihood ratio below e^3 (1 in 20) is no ground for preferring one period. */
-const CLOSE_RIVAL_LOG_LIKELIHOOD = -3;
 
 export const rivals: ReportSection = {
   heading: 'What else would fit',
@@ -18,9 +16,7 @@ export const rivals: ReportSection = {
         significant(rival.eccentricity, 2),
         typographicMinus(significant(Math.round(rival.deltaLogLikelihood * 10) / 10, 12)),
       ]);
-      const close = companion.rivals.filter(
-        (rival) => rival.deltaLogLikelihood > CLOSE_RIVAL_LOG_LIKELIHOOD,
-      ).length;
+      const close = companion.rivals.filter((rival) => rival.deltaLogLikelihood > CLOSE_RIVAL).length;
       const verdict =
         close === 0
           ? 'None is within 3 of the reported solution in ln L.'

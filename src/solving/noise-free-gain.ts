@@ -1,0 +1,25 @@
+/** Gain in ln L with the noise level free, which false-alarm probabilities are about, also where the case states a jitter. */
+import type { PlannedFit } from './explorer.js';
+
+/**
+ * ln L gained over `base`. With all jitters refitted that is the difference of the two; where the case states one, the noise
+ * may be far from what is stated, and n/2 ln(chi2_base/chi2) with one common scale of the noise takes its place.
+ */
+export function gainWithNoiseFree(base: PlannedFit, planned: PlannedFit | null): number {
+  if (planned === null) return 0;
+  const { problem, point, logLikelihood } = planned.fit;
+  if (!problem.structure.jitters.some((jitter) => jitter.isStated))
+    return logLikelihood - base.fit.logLikelihood;
+  const n = problem.data.velocitiesMps.length;
+  return 0.5 * n * Math.log(chiSquareAt(base, point.jittersMps) / chiSquareAt(planned, point.jittersMps));
+}
+
+function chiSquareAt({ fit: { problem, point } }: PlannedFit, jittersMps: Float64Array): number {
+  const prediction = problem.predictionAt(point.parameters);
+  if (prediction === null) return Infinity;
+  const { velocitiesMps, sigmasMps, instrumentOf } = problem.data;
+  return velocitiesMps.reduce((sum, velocity, i) => {
+    const variance = sigmasMps[i]! ** 2 + jittersMps[instrumentOf[i]!]! ** 2;
+    return sum + (velocity - prediction[i]!) ** 2 / variance;
+  }, 0);
+}
