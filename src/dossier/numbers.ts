@@ -163,12 +163,32 @@ function unequal(value: string, plus: string, minus: string, style: 'text' | 'ma
   return style === 'markdown' ? `${value} (+${plus}, -${minus})` : `${value} +${plus} -${minus}`;
 }
 
+/** The likeliest value lies where few draws are: no `±` about it would be true. */
+export function isOutsideItsInterval({ value, lower, upper }: Quantity): boolean {
+  return (
+    value !== null && lower !== null && upper !== null && upper > lower && (value < lower || value > upper)
+  );
+}
+
+/** `2990 .. 6740`: the interval alone, two significant digits of its width. */
+function intervalText(lower: number, upper: number, style: 'text' | 'markdown'): string {
+  const exponent = decimalExponent(Math.max(Math.abs(lower), Math.abs(upper)));
+  const scale = exponent < -5 ? 10 ** -exponent : 1;
+  const half = ((upper - lower) / 2) * scale;
+  const decimals = 1 - decimalExponent(Number(half.toPrecision(10)));
+  const body = `${fixedPlaces(lower * scale, decimals)} .. ${fixedPlaces(upper * scale, decimals)}`;
+  const scaled = scale === 1 ? body : `(${body})${powerOfTen(exponent, style)}`;
+  return style === 'markdown' ? typographicMinus(scaled) : scaled;
+}
+
 /**
  * A quantity as people read it: `41.632 ± 0.014 d`, `0.35 +0.02 -0.03`, `< 0.06 (84 %)`, `0 (fixed)`, `unknown (why)`.
  * The `csv` style is the bare value at full precision (empty when unknown).
  *
  * `±` stands for the mean of the upper and the lower error when they differ by less than 10 % of it, which is about what a
  * finite number of draws leaves between the two sides of a symmetric distribution; the record keeps both ends as they are.
+ *
+ * Where the value lies outside its interval (the likelihood is largest where few draws are) the interval alone is given, `2990 .. 6740 d`.
  *
  * An upper limit is the value below which 95 % of the draws lie, where there are draws; else the upper end of the central
  * 68.3 % interval, hence a one-sided 84 % limit.
@@ -191,6 +211,7 @@ export function formatQuantity(
     const limit = drawn?.limit ?? quantity.upper ?? value;
     return `${style === 'markdown' ? '&lt;' : '<'} ${significant(limit, 2)}${tail} (${drawn === null ? 84 : 95} %)`;
   }
+  if (isOutsideItsInterval(quantity)) return intervalText(quantity.lower!, quantity.upper!, style) + tail;
   const errors = errorsOf(quantity);
   if (errors === null) {
     const bare = significant(value, 6) + tail;

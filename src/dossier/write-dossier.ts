@@ -61,7 +61,7 @@ async function entriesOf(folder: string): Promise<string[] | null> {
         allowed: 'a new folder, an empty one, or (with --force) a dossier',
         hint: 'choose another folder with --out DIR',
       });
-    return await readdir(folder, { recursive: true });
+    return await readdir(folder);
   } catch (error) {
     if (error instanceof UsageError) throw error;
     if (codeOf(error) === 'ENOENT') return null;
@@ -78,7 +78,7 @@ async function readJson(path: string): Promise<unknown> {
 }
 
 /** Refuses to let `--force` remove anything that a dossier of ours would not contain. */
-async function refuseForeignContent(folder: string, entries: readonly string[]): Promise<void> {
+async function refuseForeignContent(folder: string): Promise<void> {
   const solution = (await readJson(join(folder, 'solution.json'))) as { schema?: unknown } | null;
   if (solution?.schema !== 'tugline/solution')
     throw new UsageError(`"${folder}" is not a dossier (it has no solution.json of this program)`, {
@@ -89,6 +89,8 @@ async function refuseForeignContent(folder: string, entries: readonly string[]):
   if (!Array.isArray(run?.files)) return;
   const written = run.files.filter((file) => typeof file === 'string');
   const ours = new Set([...written, ...written.map((file) => posix.dirname(file)), 'run.json']);
+  // Only now: what is no dossier may be a whole disk.
+  const entries = await readdir(folder, { recursive: true });
   const foreign = entries.map((entry) => entry.replaceAll('\\', '/')).filter((entry) => !ours.has(entry));
   if (foreign.length > 0)
     throw new UsageError(
@@ -113,7 +115,7 @@ export async function checkDestination(folder: string, choices: WriteChoices): P
       allowed: 'a new or an empty folder',
       hint: 'add --force to replace the dossier in it, or choose another folder with --out DIR',
     });
-  await refuseForeignContent(folder, entries);
+  await refuseForeignContent(folder);
 }
 
 async function fill(folder: string, files: readonly DossierFile[]): Promise<void> {

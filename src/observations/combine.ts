@@ -39,6 +39,18 @@ export function combineTables(tables: readonly VelocityTable[]): VelocitySet {
       'one of them leaves out the first digits: declare its offset, e.g. time: BJD_TDB - 2450000',
     );
   }
+  const seen = new Map<string, string>();
+  for (const table of tables) {
+    const twin = seen.get(table.sha256);
+    if (twin !== undefined) {
+      const message = `this table has the same content as ${quoted(twin)}: its velocities would count twice`;
+      const place = { file: table.path, line: null, column: null, field: null };
+      throw new InputDataError([
+        { code: 'same-table-twice', ...place, message, hint: 'name each table once' },
+      ]);
+    }
+    seen.set(table.sha256, table.path);
+  }
   const instruments = [...new Set(tables.flatMap((table) => table.instruments))];
   const place = new Map(instruments.map((name, index) => [name, index]));
   const scales = new Set(tables.map((table) => table.timeScale));

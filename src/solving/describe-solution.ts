@@ -84,7 +84,10 @@ export function describeSolution(
     fit: fitRecord(best, sampled, letters, velocities, residualsMps),
     posterior: posterior?.record ?? null,
     assumptions: assumptionsOf(theCase, best, posterior === null ? sampled.curvature.source : 'posterior'),
-    warnings: warningsOf({ explorer, best, theCase, velocities, companions, instruments }),
+    warnings: [
+      ...samplingWarnings(posterior),
+      ...warningsOf({ explorer, best, theCase, velocities, companions, instruments }),
+    ],
     provenance: {
       program: 'tugline',
       version: making.provenance.version,
@@ -107,6 +110,19 @@ export function describeSolution(
     window: windowFunction(timesDays, weights, spanDays),
     posterior: posterior?.draws(sampled, letters) ?? null,
   };
+}
+
+/** A posterior that did not converge is no basis for intervals. */
+function samplingWarnings(posterior: PosteriorSample | null): SolutionRecord['warnings'] {
+  if (posterior === null || posterior.record.status === 'converged') return [];
+  const { rHatMax, bulkEssMin, tailEssMin, status } = posterior.record;
+  const why = status === 'interrupted' ? 'was interrupted' : 'reached its limit of draws';
+  return [
+    {
+      code: 'posterior-not-converged',
+      message: `the sampling of the posterior ${why} before it had converged (R̂ ${rHatMax.toFixed(3)}, effective sample size ${Math.min(bulkEssMin, tailEssMin).toFixed(0)}): do not quote its intervals`,
+    },
+  ];
 }
 
 /** The case file among the inputs; it has no rows. */

@@ -4,7 +4,7 @@ import { curvatureAt, gaussianDraws } from './curvature.js';
 import { reportedValues } from './elements-report.js';
 import type { Explorer, PlannedFit } from './explorer.js';
 import { powerOfGain } from './false-alarm.js';
-import { evidenceFromFits } from './find-companions.js';
+import { evidenceFromFits } from './addition.js';
 import { gainWithNoiseFree } from './noise-free-gain.js';
 import { permutationFalseAlarm, permutedMaxima } from './permutations.js';
 import { centralInterval } from './quantities.js';
@@ -49,7 +49,9 @@ export function evidenceOf(
     falseAlarmMethod:
       permuted === null
         ? 'analytic bound of Baluev 2008 with the noise level refitted, shared between sinusoids and eccentric shapes'
-        : `${permuted.count} permutations of the residuals within instruments, ${permuted.exceeding} of which reached the power of the sinusoid (analytic bound ${falseAlarmProbability.toExponential(1)})`,
+        : permuted.exceeding === 0
+          ? `analytic bound of Baluev 2008 with the noise level refitted; none of ${permuted.count} permutations within instruments reached the power of the sinusoid, which by itself says below ${(100 * permuted.probability).toPrecision(2)} %`
+          : `${permuted.count} permutations of the residuals within instruments, ${permuted.exceeding} of which reached the power of the sinusoid (analytic bound ${falseAlarmProbability.toExponential(1)})`,
     marginal: null,
     eccentricity: eccentricityEvidence(explorer, best, index, variants, options.seed),
   };

@@ -17,6 +17,8 @@ export interface PlannedFit {
 
 /** A drift term must lower the BIC by this much to be taken. */
 const DRIFT_MARGIN = 4;
+/** With fewer velocities than this (beyond the zero points) a companion not yet found passes for a drift too easily. */
+const FEWEST_FOR_DRIFT = 8;
 /** A fit whose period runs away beyond this many times the longest period searched has found a drift, not an orbit. */
 const LONGEST_FIT = 20;
 const LARGEST_AMPLITUDE_MPS = 1e7;
@@ -50,7 +52,10 @@ export class Explorer {
       theCase.drift === 'auto'
         ? [0, 1, 2]
         : [{ none: 0, linear: 1, quadratic: 2 }[theCase.drift] as DriftDegree];
-    this.drifts = theCase.drift === 'auto' ? all.filter((degree) => degree + 2 < free) : all;
+    this.drifts =
+      theCase.drift === 'auto'
+        ? all.filter((degree) => degree === 0 || free >= FEWEST_FOR_DRIFT + 2 * degree)
+        : all;
   }
 
   /** The same case and search range for other data of the same instruments, e.g. nightly means. */
@@ -129,7 +134,7 @@ export class Explorer {
       }
     }
     const fits = chosen.map((rough) => this.fit(rough.plan, this.portable(rough)));
-    return fits.filter((planned) => planned.fit.status !== 'failed').sort(byBic);
+    return fits.filter((planned) => planned.fit.status !== 'failed' && this.isInRange(planned)).sort(byBic);
   }
 
   /** Whether every orbit of a fit is one that could exist and was searched for. */

@@ -4,39 +4,15 @@
  */
 import type { CompanionChoice } from '../observations/types.js';
 import { Explorer, byBic, byLikelihood, type PlannedFit } from './explorer.js';
-import {
-  powerOfGain,
-  shapeFalseAlarm,
-  sinusoidFalseAlarm,
-  weightedVariance,
-  type FalseAlarmSetting,
-} from './false-alarm.js';
-import { gainWithNoiseFree } from './noise-free-gain.js';
-import { nightlySupport } from './nightly.js';
+import { ACCEPTED, CANDIDATE, clears, measure, type Addition } from './addition.js';
 import { searchRange, type SearchRange } from './search-range.js';
-import { backgroundOf, type StageSearch } from './search-stage.js';
-
-/** Thresholds a companion must clear, and the weaker ones of a candidate. */
-export const ACCEPTED = { falseAlarmProbability: 1e-3, deltaBic: 10 } as const;
-export const CANDIDATE = { falseAlarmProbability: 1e-2, deltaBic: 5 } as const;
+import type { StageSearch } from './search-stage.js';
 
 /** A search by sinusoids alone. */
 const NO_SHAPES = 0;
 
 /** Finalists of a stage that are weighed before the search ends. */
 const QUESTIONED = 4;
-
-/** Share of the false-alarm budget given to sinusoids; the rest goes to eccentric shapes. */
-const SINUSOID_SHARE = 0.8;
-
-export interface Addition {
-  readonly planned: PlannedFit;
-  readonly deltaLogLikelihood: number;
-  readonly deltaBic: number;
-  readonly falseAlarmProbability: number;
-  /** Whether counting each night once was asked for and made the evidence what it is. */
-  readonly countedByNight: boolean;
-}
 
 export interface FoundStage {
   readonly search: StageSearch;
@@ -107,16 +83,6 @@ export function findCompanions(explorer: Explorer, onStage: (done: number) => vo
   return { best, stages, candidate };
 }
 
-export function clears(
-  addition: Addition,
-  thresholds: { falseAlarmProbability: number; deltaBic: number },
-): boolean {
-  return (
-    addition.falseAlarmProbability < thresholds.falseAlarmProbability &&
-    addition.deltaBic > thresholds.deltaBic
-  );
-}
-
 function nextAddition(
   explorer: Explorer,
   base: PlannedFit,
@@ -139,7 +105,7 @@ function nextAddition(
     const addition = measure(explorer, base, explorer.settleStructure(fit), fits);
     if (clears(addition, ACCEPTED)) return { addition, alternatives: fits.filter((other) => other !== fit) };
     first ??= addition;
-    if (!addition.countedByNight) break;
+    if (addition.refusal === null) break;
   }
   return { addition: first, alternatives: fits.slice(1) };
 }
@@ -157,69 +123,6 @@ function bestShapeOf(
     eccentricity: companion.eccentricity,
     gain: eccentric.fit.logLikelihood - base.fit.logLikelihood,
   };
-}
-
-/** Evidence of an addition over the model without it; where nights hold several velocities, the weaker of two countings. */
-function measure(
-  explorer: Explorer,
-  base: PlannedFit,
-  top: PlannedFit,
-  fits: readonly PlannedFit[],
-): Addition {
-  const bestOf = (circular: boolean): PlannedFit | null =>
-    [top, ...fits]
-      .filter(
-        (planned) =>
-          planned.plan.companions.at(-1)!.circular === circular && planned.plan.drift <= base.plan.drift,
-      )
-      .sort(byLikelihood)[0] ?? null;
-  const variants = { circular: bestOf(true), eccentric: bestOf(false) };
-  const evidence = evidenceFromFits(explorer, base, top, variants);
-  return { planned: top, ...evidence };
-}
-
-/** Gains of `top` over `base`, and the false-alarm probability of the better of a sinusoid and an eccentric shape. */
-export function evidenceFromFits(
-  explorer: Explorer,
-  base: PlannedFit,
-  top: PlannedFit,
-  variants: { readonly circular: PlannedFit | null; readonly eccentric: PlannedFit | null },
-): Omit<Addition, 'planned'> {
-  const setting = falseAlarmSettingOf(explorer, base);
-  const every = {
-    deltaLogLikelihood: top.fit.logLikelihood - base.fit.logLikelihood,
-    deltaBic: base.fit.bic - top.fit.bic,
-    falseAlarmProbability: sharedFalseAlarm(
-      gainWithNoiseFree(base, variants.circular),
-      gainWithNoiseFree(base, variants.eccentric),
-      setting,
-    ),
-    countedByNight: false,
-  };
-  const nightly = nightlySupport(explorer, base, top);
-  if (nightly === null) return every;
-  const nightlyGain = (planned: PlannedFit | null): number =>
-    planned === null || planned.fit.status === 'failed'
-      ? 0
-      : gainWithNoiseFree(nightly.base, nightly.explorer.fit(planned.plan, explorer.portable(planned)));
-  const alarm = sharedFalseAlarm(
-    nightlyGain(variants.circular),
-    nightlyGain(variants.eccentric),
-    falseAlarmSettingOf(nightly.explorer, nightly.base),
-  );
-  return {
-    deltaLogLikelihood: every.deltaLogLikelihood,
-    deltaBic: Math.min(every.deltaBic, nightly.deltaBic),
-    falseAlarmProbability: Math.max(every.falseAlarmProbability, alarm),
-    countedByNight: true,
-  };
-}
-
-/** False-alarm probability with the budget shared between sinusoids and eccentric shapes. */
-function sharedFalseAlarm(circularGain: number, eccentricGain: number, setting: FalseAlarmSetting): number {
-  const sinusoid = sinusoidFalseAlarm(powerOfGain(circularGain, setting.dataCount), setting) / SINUSOID_SHARE;
-  const shape = shapeFalseAlarm(eccentricGain, setting) / (1 - SINUSOID_SHARE);
-  return Math.min(1, sinusoid, shape);
 }
 
 /** Searches anew for each earlier companion with the others in place; adopts what lowers the BIC. */
@@ -261,16 +164,4 @@ function rangeOfChoice(explorer: Explorer, choice: CompanionChoice): SearchRange
         ? { low: Math.max(1e-3, period.value - 5 * period.sigma), high: period.value + 5 * period.sigma }
         : { low: period.value * (1 - 1e-6), high: period.value * (1 + 1e-6) };
   return searchRange(span, bounds);
-}
-
-/** What the false-alarm probability of one more companion on top of a fit depends on. */
-export function falseAlarmSettingOf(explorer: Explorer, base: PlannedFit): FalseAlarmSetting {
-  const background = backgroundOf(base.fit);
-  const { grid } = explorer.range;
-  return {
-    dataCount: background.timesDays.length,
-    backgroundCount: background.basis.length,
-    bandwidthPerDay: (grid.count - 1) * grid.stepPerDay,
-    timeVarianceDays2: weightedVariance(background.timesDays, background.weights),
-  };
 }

@@ -74,5 +74,7 @@ export function stageRecord(
 
 /** Stage of the search for companions as a record. */
 export function foundStageRecord(stage: FoundStage, spanDays: number): SearchStage {
-  return stageRecord(stage.search, stage.companionsFitted, spanDays, stage.bestShape);
+  const record = stageRecord(stage.search, stage.companionsFitted, spanDays, stage.bestShape);
+  const refusal = stage.addition?.refusal ?? null;
+  return refusal === null ? record : { ...record, refusal };
 }

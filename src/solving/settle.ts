@@ -40,7 +40,7 @@ export function settleCase(
 
 /** Rivals of every companion; a rival that turns out better becomes the solution and the question is asked again. */
 function settleRivals(explorer: Explorer, found: Found): { best: PlannedFit; rivals: RivalSearch[] } {
-  let best = polish(found.best);
+  let best = polished(explorer, found.best);
   for (let turn = 0; ; turn++) {
     const rivals: RivalSearch[] = [];
     let better: PlannedFit | null = null;
@@ -52,8 +52,14 @@ function settleRivals(explorer: Explorer, found: Found): { best: PlannedFit; riv
     if (better === null || turn >= ADOPTIONS) {
       return { best, rivals: better === null ? rivals : allRivals(explorer, found, best) };
     }
-    best = polish(explorer.settleStructure(better));
+    best = polished(explorer, explorer.settleStructure(better));
   }
+}
+
+/** The last steps to the maximum, unless they lead to an orbit that cannot be. */
+function polished(explorer: Explorer, planned: PlannedFit): PlannedFit {
+  const top = polish(planned);
+  return explorer.isInRange(top) ? top : planned;
 }
 
 /** Rivals of every companion of a solution. */

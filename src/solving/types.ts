@@ -247,6 +247,8 @@ export interface SearchStage {
   readonly power: Float64Array;
   readonly levels: readonly { readonly falseAlarmProbability: number; readonly power: number }[];
   readonly peaks: readonly PeriodPeak[];
+  /** Why the best addition of this stage was not fitted though its evidence looked sufficient. */
+  readonly refusal?: string;
   /** Best eccentric shape found by the Keplerian scan at this stage, if it beats the sinusoid. */
   readonly eccentricPeak: { readonly periodDays: number; readonly eccentricity: number; readonly deltaLogLikelihood: number; readonly falseAlarmProbability: number } | null; // prettier-ignore
 }

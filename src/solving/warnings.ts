@@ -1,7 +1,9 @@
 /** What the user must know before believing a solution. */
 import type { Case, VelocitySet } from '../observations/types.js';
+import { medianAbsoluteDeviation } from '../numerics/summary.js';
+import { AU_IN_SOLAR_RADII } from '../orbit/constants.js';
 import type { Explorer, PlannedFit } from './explorer.js';
-import { ACCEPTED } from './find-companions.js';
+import { ACCEPTED } from './addition.js';
 import { CLOSE_RIVAL } from './rivals.js';
 import { YEAR_PER_DAY } from './window-function.js';
 import type { CompanionRecord, InstrumentRecord } from './types.js';
@@ -149,6 +151,55 @@ const excessScatter: Check = ({ best, velocities }) => {
     : [];
 }; // prettier-ignore
 
+/** Velocities far from all others: one alone can pass for an orbit, or hide one. */
+const outliers: Check = ({ best, velocities }) => {
+  const { problem, point } = best.fit;
+  const prediction = problem.predictionAt(point.parameters)!;
+  const scaled = velocities.velocitiesMps.map(
+    (velocity, i) => (velocity - prediction[i]!) / velocities.sigmasMps[i]!,
+  );
+  const scatter = 1.4826 * (medianAbsoluteDeviation(scaled) || 1);
+  return Array.from(scaled, (z, i) => ({ times: Math.abs(z) / scatter, i }))
+    .filter(({ times }) => times > 5)
+    .sort((a, b) => b.times - a.times)
+    .slice(0, 5)
+    .map(({ times, i }) => ({
+      code: 'outlier',
+      message: `${velocities.tables[velocities.tableOf[i]!]?.path ?? 'table'}:${velocities.lines[i]!}: this velocity lies ${times.toFixed(0)} times the usual scatter from the model; one such value can hide an orbit or pass for one: check it, or flag it`,
+    }));
+}; // prettier-ignore
+
+/** Errors much larger than the scatter make every signal look weak. */
+const errorsTooLarge: Check = ({ best, velocities }) => {
+  const { problem, point } = best.fit;
+  const prediction = problem.predictionAt(point.parameters)!;
+  const chiSquare = velocities.velocitiesMps.reduce(
+    (sum, velocity, i) => sum + ((velocity - prediction[i]!) / velocities.sigmasMps[i]!) ** 2,
+    0,
+  );
+  const degrees = velocities.count - problem.freeCount;
+  return degrees > 8 && chiSquare < 0.35 * degrees
+    ? [{ code: 'errors-too-large', message: `χ² is ${chiSquare.toPrecision(2)} for ${degrees} degrees of freedom: the stated errors are much larger than the scatter, so that signals look weaker than they are; check their unit` }]
+    : [];
+}; // prettier-ignore
+
+/** A companion that was asked for and is not there. */
+const missingCompanions: Check = ({ theCase, companions }) => {
+  const wanted = typeof theCase.companions === 'object' ? theCase.companions.length : theCase.companions;
+  return typeof wanted === 'number' && wanted > companions.length
+    ? [{ code: 'companion-not-found', message: `${wanted} companions were asked for, ${companions.length} could be fitted: look at the range of periods that is searched, and at the number of velocities` }]
+    : [];
+}; // prettier-ignore
+
+/** An orbit inside the star contradicts what the case says of the star. */
+const insideStar: Check = ({ theCase, companions }) =>
+  companions.flatMap(({ letter, derived }) => {
+    const axis = derived.semiMajorAxis.value;
+    const radius = theCase.star.radiusSolar?.value ?? null;
+    if (axis === null || radius === null || axis * AU_IN_SOLAR_RADII > radius) return [];
+    return [{ code: 'orbit-inside-star', message: `companion ${letter}: the orbit (${axis.toPrecision(3)} au) lies inside a star of ${radius} R_sun: radius and orbit contradict each other` }];
+  }); // prettier-ignore
+
 /** A harmonic of another companion may be its eccentricity. */
 const harmonics: Check = ({ companions }) =>
   companions.flatMap((outer) =>
@@ -190,6 +241,10 @@ const CHECKS: readonly Check[] = [
   largeJitters,
   excessScatter,
   harmonics,
+  outliers,
+  errorsTooLarge,
+  missingCompanions,
+  insideStar,
 ];
 
 export function warningsOf(given: WarningInput): Warning[] {

@@ -3,7 +3,8 @@ import { describe, expect, it } from 'vitest';
 import { evaluateSet, simulatedSet } from '../challenge/evaluate.js';
 import { KINDS } from '../challenge/kinds.js';
 import { sinusoidFalseAlarm, powerOfGain } from '../../src/solving/false-alarm.js';
-import { falseAlarmSettingOf, findCompanions } from '../../src/solving/find-companions.js';
+import { findCompanions } from '../../src/solving/find-companions.js';
+import { falseAlarmSettingOf } from '../../src/solving/addition.js';
 import { explorerFor } from '../../src/solving/prepare.js';
 import { BARE_CASE } from './helpers.js';
 

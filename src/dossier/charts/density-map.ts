@@ -8,7 +8,7 @@ import { gaussianWeights, returned, smoothLines } from './smoothing.js';
 import type { Spread } from './spread-of-draws.js';
 
 /** Shares within one and two standard deviations of a Gaussian in two dimensions: 1 - exp(-k²/2). */
-export const CONTOUR_SHARES = [1 - Math.exp(-0.5), 1 - Math.exp(-2)] as const;
+export const CONTOUR_SHARES: readonly [number, number] = [1 - Math.exp(-0.5), 1 - Math.exp(-2)];
 
 export interface PairDraws {
   /** (n) draws and where they lie. */

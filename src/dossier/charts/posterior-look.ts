@@ -5,7 +5,9 @@ import { shade, tint } from './style.js';
 
 const BASE = '#0072b2';
 
-export const POSTERIOR_LOOK = {
+export const POSTERIOR_LOOK: Readonly<
+  Record<'pale' | 'medium' | 'strong' | 'line' | 'point' | 'median' | 'reported', string>
+> = {
   /** Everything, and the central parts of it. */
   pale: tint(BASE, 0.86),
   medium: tint(BASE, 0.66),
@@ -14,7 +16,7 @@ export const POSTERIOR_LOOK = {
   point: tint(BASE, 0.35),
   median: '#111111',
   reported: '#d55e00',
-} as const;
+};
 
 /** Fewer draws than this make no density. */
 export const FEWEST_DRAWS = 50;

@@ -143,7 +143,7 @@ function leftoverParagraph(stages: Solved['stages']): string[] {
   const model = last.companionsFitted === 0 ? 'no companion' : 'these companions';
   return [
     `With ${model} in the model the highest peak that is left is at ${significant(peak.periodDays, 5)} d, with a false-alarm probability of ` +
-      `${probability(peak.falseAlarmProbability)}. A companion is fitted when its false-alarm probability is below 0.1 % and it improves the BIC by more than 10; ` +
+      `${probability(peak.falseAlarmProbability)}.${last.refusal === undefined ? '' : ` The best fit to what is left was refused: ${last.refusal}.`} A companion is fitted when its false-alarm probability is below 0.1 % and it improves the BIC by more than 10; ` +
       'one that clears only 1 % and 5 is listed as a candidate.',
   ];
 }

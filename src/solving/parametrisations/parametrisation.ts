@@ -47,6 +47,8 @@ export interface Parametrisation {
   fromElements(elements: RelativeElements, free: Float64Array, offset: number): void;
 }
 
+const LARGEST_ECCENTRICITY = 0.99999;
+
 /** Coordinates to elements; periastron is the passage nearest to the epoch. */
 export function coordinatesToElements(coordinates: Float64Array, offset = 0): RelativeElements {
   const periodDays = Math.exp(coordinates[offset]!);
@@ -54,7 +56,8 @@ export function coordinatesToElements(coordinates: Float64Array, offset = 0): Re
   let h = coordinates[offset + 3]!;
   let longitude = coordinates[offset + 1]!;
   let amplitude = coordinates[offset + 4]!;
-  const eccentricity = Math.hypot(k, h);
+  // A difference quotient or a draw may step across e = 1, where there is no ellipse to convert to.
+  const eccentricity = Math.min(Math.hypot(k, h), LARGEST_ECCENTRICITY);
   if (amplitude < 0) {
     // A negative amplitude is the same orbit turned by half a revolution.
     if (eccentricity > 0) {
