@@ -160,4 +160,10 @@ describe('plain numbers', () => {
     expect(formatProbability(0, 'text')).toBe('< 1e-300');
     expect(formatProbability(1, 'text')).toBe('100 %');
   });
+
+  it('gives the interval alone where the value lies outside it', () => {
+    const outside = { value: 8254, sigma: 1800, lower: 2993, upper: 6736, unit: 'd' };
+    expect(formatQuantity(outside, 'text')).toBe('3000 .. 6700 d');
+    expect(formatQuantity({ ...outside, value: 5000 }, 'text')).toContain('5000 +');
+  });
 });

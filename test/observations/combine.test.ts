@@ -24,6 +24,12 @@ describe('combining tables', () => {
     ]);
   });
 
+  it('refuses the same table twice: its velocities would count twice', () => {
+    const again = { ...north(), path: 'copy.csv' };
+    const issues = issuesOf(() => combineTables([north(), again]));
+    expect(issues.map(({ code, file }) => [code, file])).toEqual([['same-table-twice', 'copy.csv']]);
+  });
+
   it('carries the notices with their paths, and the worst time scale', () => {
     const set = combineTables([north(), south()]);
     expect(set.timeScale).toBe('JD');
