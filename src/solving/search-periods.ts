@@ -57,15 +57,17 @@ export function searchPeriods(
   const peaks =
     maxima === null
       ? stage.peaks
-      : stage.peaks.map((peak) => ({
-          ...peak,
-          falseAlarmProbability: permutationFalseAlarm(maxima, peak.power).probability,
-        }));
+      : stage.peaks.map((peak) => {
+          const { probability, exceeding } = permutationFalseAlarm(maxima, peak.power);
+          // Where no permutation comes near, their number is all that they say; the bound says more.
+          const bound = Math.min(probability, peak.falseAlarmProbability);
+          return { ...peak, falseAlarmProbability: exceeding === 0 ? bound : probability };
+        });
   const drift = ['', ', and a linear drift', ', and a quadratic drift'][base.plan.drift]!;
   return {
     stage: { ...stage, peaks },
     window: windowFunction(search.background.timesDays, search.background.weights, spanDays),
     notices: velocities.notices.map(({ code, message, path }) => ({ code, message: `${path}: ${message}` })),
-    method: `a mean per instrument${drift} refitted at each frequency; false-alarm probabilities ${permutations > 0 ? `from ${permutations} permutations within instruments` : 'are the analytic bound of Baluev 2008'}`,
+    method: `a mean per instrument${drift} refitted at each frequency; false-alarm probabilities ${permutations > 0 ? `from ${permutations} permutations within instruments, or the analytic bound of Baluev 2008 where none reached the power` : 'are the analytic bound of Baluev 2008'}`,
   };
 }
