@@ -11,6 +11,7 @@ import type { Found } from './find-companions.js';
 import { fixedQuantity, unknownQuantity } from './quantities.js';
 import type { CompanionMarginals } from './posterior/marginals.js';
 import type { PosteriorSample } from './posterior/sample-posterior.js';
+import { chiSquareOf, residualsOf } from './residuals.js';
 import { foundStageRecord } from './search-record.js';
 import { backgroundOf } from './search-stage.js';
 import type { Settled } from './settle.js';
@@ -54,7 +55,7 @@ export function describeSolution(
       posterior?.marginals[c] ?? null,
     ),
   );
-  const residualsMps = residualsOf(best);
+  const residualsMps = residualsOf(best.fit)!;
   const instruments = instrumentRecords(velocities, sampled, best, residualsMps);
   const record: SolutionRecord = {
     schema: 'tugline/solution',
@@ -86,7 +87,7 @@ export function describeSolution(
     assumptions: assumptionsOf(theCase, best, posterior === null ? sampled.curvature.source : 'posterior'),
     warnings: [
       ...samplingWarnings(posterior),
-      ...warningsOf({ explorer, best, theCase, velocities, companions, instruments }),
+      ...warningsOf({ explorer, best, residualsMps, theCase, velocities, companions, instruments }),
     ],
     provenance: {
       program: 'tugline',
@@ -165,12 +166,6 @@ function candidateRecords(explorer: Explorer, found: Found): CandidateRecord[] {
   ];
 }
 
-function residualsOf(best: PlannedFit): Float64Array {
-  const { problem, point } = best.fit;
-  const prediction = problem.predictionAt(point.parameters)!;
-  return problem.data.velocitiesMps.map((velocity, i) => velocity - prediction[i]!);
-}
-
 function instrumentRecords(
   velocities: VelocitySet,
   sampled: Sampled,
@@ -205,10 +200,7 @@ function fitRecord(
   const { problem, point, logLikelihood, bic, status, reason } = best.fit;
   const n = velocities.count;
   const k = problem.freeCount;
-  const chiSquare = residualsMps.reduce((sum, residual, i) => {
-    const variance = velocities.sigmasMps[i]! ** 2 + point.jittersMps[velocities.instrumentOf[i]!]! ** 2;
-    return sum + (residual * residual) / variance;
-  }, 0);
+  const chiSquare = chiSquareOf(residualsMps, problem.data, point.jittersMps);
   return {
     status,
     reason,

@@ -2,6 +2,7 @@
 import type { VelocityData } from '../signals/velocity-term.js';
 import type { Explorer, PlannedFit } from './explorer.js';
 import { nightsOf } from './nightly.js';
+import { residualsOf } from './residuals.js';
 
 /** The question is asked when one night carries more than this share of what the companion gains. */
 const CARRYING_SHARE = 0.35;
@@ -24,17 +25,14 @@ export function withoutCarryingNight(
 ): WithoutNight | null {
   const { data } = explorer.builder;
   const { nightOf, count } = nightsOf(data);
-  const before = base.fit.problem.predictionAt(base.fit.point.parameters);
-  if (before === null) return null;
-  const residuals = data.velocitiesMps.map((velocity, i) => velocity - before[i]!);
-  const after = top.fit.problem.predictionAt(top.fit.point.parameters);
-  if (after === null) return null;
+  const before = residualsOf(base.fit);
+  const after = residualsOf(top.fit);
+  if (before === null || after === null) return null;
   const gains = new Float64Array(count);
   let total = 0;
   for (let i = 0; i < nightOf.length; i++) {
     const jitter = top.fit.point.jittersMps[data.instrumentOf[i]!]!;
-    const left = data.velocitiesMps[i]! - after[i]!;
-    const gain = (residuals[i]! ** 2 - left * left) / (data.sigmasMps[i]! ** 2 + jitter * jitter);
+    const gain = (before[i]! ** 2 - after[i]! ** 2) / (data.sigmasMps[i]! ** 2 + jitter * jitter);
     gains[nightOf[i]!]! += gain;
     total += gain;
   }

@@ -1,5 +1,6 @@
 /** Gain in ln L with the noise level free, which false-alarm probabilities are about, also where the case states a jitter. */
 import type { PlannedFit } from './explorer.js';
+import { chiSquareOf, residualsOf } from './residuals.js';
 
 /**
  * ln L gained over `base`. With all jitters refitted that is the difference of the two; where the case states one, the noise
@@ -14,12 +15,7 @@ export function gainWithNoiseFree(base: PlannedFit, planned: PlannedFit | null):
   return 0.5 * n * Math.log(chiSquareAt(base, point.jittersMps) / chiSquareAt(planned, point.jittersMps));
 }
 
-function chiSquareAt({ fit: { problem, point } }: PlannedFit, jittersMps: Float64Array): number {
-  const prediction = problem.predictionAt(point.parameters);
-  if (prediction === null) return Infinity;
-  const { velocitiesMps, sigmasMps, instrumentOf } = problem.data;
-  return velocitiesMps.reduce((sum, velocity, i) => {
-    const variance = sigmasMps[i]! ** 2 + jittersMps[instrumentOf[i]!]! ** 2;
-    return sum + (velocity - prediction[i]!) ** 2 / variance;
-  }, 0);
+function chiSquareAt({ fit }: PlannedFit, jittersMps: Float64Array): number {
+  const residuals = residualsOf(fit);
+  return residuals === null ? Infinity : chiSquareOf(residuals, fit.problem.data, jittersMps);
 }

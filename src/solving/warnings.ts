@@ -4,6 +4,7 @@ import { medianAbsoluteDeviation } from '../numerics/summary.js';
 import { AU_IN_SOLAR_RADII } from '../orbit/constants.js';
 import type { Explorer, PlannedFit } from './explorer.js';
 import { ACCEPTED } from './addition.js';
+import { chiSquareOf } from './residuals.js';
 import { CLOSE_RIVAL } from './rivals.js';
 import { YEAR_PER_DAY } from './window-function.js';
 import type { CompanionRecord, InstrumentRecord } from './types.js';
@@ -16,6 +17,8 @@ export interface Warning {
 interface WarningInput {
   readonly explorer: Explorer;
   readonly best: PlannedFit;
+  /** (n), observed minus model, m/s. */
+  readonly residualsMps: Float64Array;
   readonly theCase: Case;
   readonly velocities: VelocitySet;
   readonly companions: readonly CompanionRecord[];
@@ -137,14 +140,10 @@ const largeJitters: Check = ({ velocities, instruments }) =>
   }); // prettier-ignore
 
 /** With jitters that cannot grow, unexplained scatter would pass for precision. */
-const excessScatter: Check = ({ best, velocities }) => {
+const excessScatter: Check = ({ best, residualsMps, velocities }) => {
   const { problem, point } = best.fit;
   if (!problem.structure.jitters.some((jitter) => jitter.isStated)) return [];
-  const prediction = problem.predictionAt(point.parameters)!;
-  const chiSquare = velocities.velocitiesMps.reduce((sum, velocity, i) => {
-    const variance = velocities.sigmasMps[i]! ** 2 + point.jittersMps[velocities.instrumentOf[i]!]! ** 2;
-    return sum + (velocity - prediction[i]!) ** 2 / variance;
-  }, 0);
+  const chiSquare = chiSquareOf(residualsMps, problem.data, point.jittersMps);
   const degrees = velocities.count - problem.freeCount;
   return degrees > 4 && chiSquare > 1.8 * degrees
     ? [{ code: 'scatter-exceeds-noise', message: `χ² is ${chiSquare.toFixed(0)} for ${degrees} degrees of freedom: errors and stated jitters are too small for these residuals, so uncertainties and evidence are too good; leave the jitter free` }]
@@ -152,12 +151,8 @@ const excessScatter: Check = ({ best, velocities }) => {
 }; // prettier-ignore
 
 /** Velocities far from all others: one alone can pass for an orbit, or hide one. */
-const outliers: Check = ({ best, velocities }) => {
-  const { problem, point } = best.fit;
-  const prediction = problem.predictionAt(point.parameters)!;
-  const scaled = velocities.velocitiesMps.map(
-    (velocity, i) => (velocity - prediction[i]!) / velocities.sigmasMps[i]!,
-  );
+const outliers: Check = ({ residualsMps, velocities }) => {
+  const scaled = residualsMps.map((residual, i) => residual / velocities.sigmasMps[i]!);
   const scatter = 1.4826 * (medianAbsoluteDeviation(scaled) || 1);
   return Array.from(scaled, (z, i) => ({ times: Math.abs(z) / scatter, i }))
     .filter(({ times }) => times > 5)
@@ -170,13 +165,10 @@ const outliers: Check = ({ best, velocities }) => {
 }; // prettier-ignore
 
 /** Errors much larger than the scatter make every signal look weak. */
-const errorsTooLarge: Check = ({ best, velocities }) => {
-  const { problem, point } = best.fit;
-  const prediction = problem.predictionAt(point.parameters)!;
-  const chiSquare = velocities.velocitiesMps.reduce(
-    (sum, velocity, i) => sum + ((velocity - prediction[i]!) / velocities.sigmasMps[i]!) ** 2,
-    0,
-  );
+const errorsTooLarge: Check = ({ best: { fit }, residualsMps, velocities }) => {
+  const { problem } = fit;
+  const withoutJitter = new Float64Array(problem.data.instrumentCount);
+  const chiSquare = chiSquareOf(residualsMps, problem.data, withoutJitter);
   const degrees = velocities.count - problem.freeCount;
   return degrees > 8 && chiSquare < 0.35 * degrees
     ? [{ code: 'errors-too-large', message: `χ² is ${chiSquare.toPrecision(2)} for ${degrees} degrees of freedom: the stated errors are much larger than the scatter, so that signals look weaker than they are; check their unit` }]

@@ -6,7 +6,8 @@ import { findCompanions } from '../../src/solving/find-companions.js';
 import type { PortablePoint } from '../../src/solving/model-builder.js';
 import type { RelativeElements } from '../../src/solving/parametrisations/parametrisation.js';
 import { explorerFor } from '../../src/solving/prepare.js';
-import { KINDS, type Kind, type SimulatedSet } from './kinds.js';
+import { KINDS, type Kind } from './kinds.js';
+import type { SimulatedSet } from './simulate.js';
 
 export interface SetResult {
   readonly kind: string;

@@ -1,7 +1,7 @@
 /** What a worker needs to run chains of one mode, and what it sends back. Plain data, so that it crosses threads. */
 import type { Case } from '../../observations/types.js';
 import type { VelocityData } from '../../signals/velocity-term.js';
-import type { ModelPlan, PortablePoint } from '../model-builder.js';
+import type { ModelPlan } from '../model-builder.js';
 import { ModelBuilder } from '../model-builder.js';
 import { NutsChain } from '../../numerics/sampling/nuts.js';
 import { RandomStream } from '../../numerics/random.js';
@@ -60,9 +60,4 @@ export class ChainRunner {
     const { positions, logDensities, energies, divergent } = this.#chain.draw(count);
     return { positions, logDensities, energies, divergences: divergent.reduce((sum, flag) => sum + flag, 0) };
   }
-}
-
-/** Start of a mode: its point in sampling coordinates. */
-export function startPosition(density: PosteriorDensity, portable: PortablePoint): Float64Array {
-  return density.position(portable);
 }
