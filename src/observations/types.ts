@@ -116,6 +116,24 @@ export interface CompanionChoice {
   readonly elements: Partial<Readonly<Record<ElementName, ElementChoice>>>;
   /** Degrees; used for the true mass when given. */
   readonly inclinationDeg: Measured | null;
+  /** What is stated of its transits; absent where nothing is. */
+  readonly transit?: TransitChoice;
+}
+
+/** Choices for what a light curve shows of a companion. Absent means free with its default range. */
+export interface TransitChoice {
+  /** Companion's radius over the star's. */
+  readonly radiusRatio?: ElementChoice;
+  /** Of the transit, in stellar radii. */
+  readonly impactParameter?: ElementChoice;
+  /** The light curves hold its occultations too, and their depth is fitted (one per band). */
+  readonly occultation?: boolean;
+}
+
+/** What a case may say of limb darkening in a band: Gaussian priors (sigma 0 fixes), in place of the triangular sampling. */
+export interface BandChoice {
+  readonly u1: Measured | null;
+  readonly u2: Measured | null;
 }
 
 export interface InstrumentChoice {
@@ -179,6 +197,8 @@ export interface Case {
     readonly massSolar: Measured | null;
     readonly radiusSolar: Measured | null;
     readonly effectiveTemperatureK: Measured | null;
+    /** Mean density, g/cm3: a prior for the shape of transits. */
+    readonly densityGcc?: Measured | null;
   };
   readonly tables: readonly TableRequest[];
   /** `auto`: as many as the data pay for; a number: exactly that many; a list: these, searched or started as described. */
@@ -187,6 +207,8 @@ export interface Case {
   readonly drift: DriftChoice;
   readonly circular: boolean | 'auto';
   readonly instruments: Readonly<Record<string, InstrumentChoice>>;
+  /** Limb darkening, by name of the band. */
+  readonly bands?: Readonly<Record<string, BandChoice>>;
   /** Search range in days; `null` leaves it to the data (0.5 d to 1.5 spans). */
   readonly periodRangeDays: { readonly low: number | null; readonly high: number | null };
   readonly mock: MockPlan | null;

@@ -4,6 +4,12 @@
  */
 import type { TimeScale, VelocitySet } from '../observations/types.js';
 import type { VelocityModelPoint } from '../signals/velocity-model.js';
+import type {
+  PhotometryRecord,
+  SolvedPhotometry,
+  TransitDerivedKey,
+  TransitElementKey,
+} from './transit-types.js';
 
 /** A number with its uncertainty. `lower` and `upper` bound the central 68.3 %; an unknown is `null` with a `why`. */
 export interface Quantity {
@@ -76,8 +82,11 @@ export type DerivedKey = (typeof DERIVED_KEYS)[number];
 
 export interface CompanionRecord {
   readonly letter: string;
-  readonly elements: Readonly<Record<ElementKey, Quantity>>;
-  readonly derived: Readonly<Record<DerivedKey, Quantity>>;
+  /** Those of a transit only where a light curve shows one. */
+  readonly elements: Readonly<Record<ElementKey, Quantity>> &
+    Partial<Readonly<Record<TransitElementKey, Quantity>>>;
+  readonly derived: Readonly<Record<DerivedKey, Quantity>> &
+    Partial<Readonly<Record<TransitDerivedKey, Quantity>>>;
   readonly circular: boolean;
   readonly evidence: Evidence;
   /** Best first; those whose ln L falls short by more than 12 are dismissed. */
@@ -189,6 +198,8 @@ export interface SolutionRecord {
     readonly slope: Quantity; // m/s/yr
     readonly curvature: Quantity; // m/s/yr^2
   };
+  /** Light curves and mid-times; absent where there are none. */
+  readonly photometry?: PhotometryRecord;
   readonly fit: {
     readonly status: 'converged' | 'iteration-limit' | 'failed';
     readonly reason: string;
@@ -263,6 +274,7 @@ export interface WindowFunction {
 /** Everything that `solve` found: the record for people and machines, and the arrays that charts and tables need. */
 export interface Solved {
   readonly record: SolutionRecord;
+  /** `count` is 0 where there are none. */
   readonly velocities: VelocitySet;
   readonly best: VelocityModelPoint;
   /** Observed minus model (zero point, drift, companions), m/s, in the order of `velocities`. */
@@ -271,4 +283,6 @@ export interface Solved {
   readonly window: WindowFunction;
   /** `null` with `--quick`. */
   readonly posterior: PosteriorDraws | null;
+  /** Light curves, mid-times and the search for dips; absent without light curves and mid-times. */
+  readonly photometry?: SolvedPhotometry;
 }
