@@ -3,26 +3,23 @@ import { InputDataError, UsageError } from '../errors.js';
 import { plainLabel } from '../dossier/escape.js';
 import {
   caseFromTables,
+  checkChoices,
   checkInstrumentChoices,
   combineTables,
-  parseTable,
+  gatherObservations,
+  parseAnyTable,
+  readAnyTable,
   readCase,
-  readTable,
-  readTimeLabel,
-  type TimeLabel,
+  type AnyTable,
 } from '../observations/index.js';
-import {
-  TIME_SCALES,
-  type Case,
-  type TableRequest,
-  type VelocitySet,
-  type VelocityTable,
-} from '../observations/types.js';
+import { type Case, type TableRequest, type VelocitySet, type VelocityTable } from '../observations/types.js';
+import type { Observations } from '../observations/photometry-types.js';
 import type { CommandArguments } from './command-arguments.js';
+import { requestChoices } from './table-options.js';
 import type { Terminal } from './terminal.js';
 
-/** As much as any table of velocities could need; more is not a table of velocities. */
-const INPUT_LIMIT_BYTES = 64 * 1024 * 1024;
+/** As much as is read of a file. */
+const INPUT_LIMIT_BYTES = 256 * 1024 * 1024;
 /** What standard input is called in messages and records, and its instrument unless it has a name. */
 const INPUT_NAME = 'standard-input';
 const MOST_COMPANIONS = 20;
@@ -30,55 +27,6 @@ const LINES_SHOWN = 8;
 
 function isCase(path: string): boolean {
   return /\.ya?ml$/i.test(path);
-}
-
-/** `time=BJD,velocity=2` as column choices. */
-export function parseColumns(text: string): TableRequest['columns'] {
-  const allowed = ['time', 'velocity', 'velocity-error', 'instrument', 'quality'] as const;
-  const columns: Record<string, string> = {};
-  for (const pair of text.split(',')) {
-    const [name = '', ...rest] = pair.split('=');
-    const meaning = allowed.find((candidate) => candidate === name.trim().toLowerCase());
-    const column = rest.join('=').trim();
-    if (meaning === undefined || column === '' || meaning in columns)
-      throw new UsageError(
-        `--columns has "${plainLabel(pair, 60)}"${meaning !== undefined && meaning in columns ? ' a second time' : ''}`,
-        {
-          allowed: `MEANING=COLUMN pairs separated by commas; meanings: ${allowed.join(', ')}`,
-          hint: '--columns "time=BJD,velocity=2,velocity-error=3"',
-        },
-      );
-    columns[meaning] = column;
-  }
-  return columns;
-}
-
-/** `BJD_TDB`, or with the days that the table leaves out: `BJD_TDB - 2457000`. */
-function timeChoice(given: CommandArguments): TimeLabel | null {
-  const text = given.text('time-scale');
-  if (text === null) return null;
-  const label = readTimeLabel(text);
-  if (label === null || label.scale === 'unknown')
-    throw new UsageError(`--time-scale is "${plainLabel(text, 60)}"`, {
-      allowed: TIME_SCALES.filter((scale) => scale !== 'unknown').join(', '),
-      hint: 'days that the table leaves out may follow: --time-scale "BJD_TDB - 2457000"',
-    });
-  return label;
-}
-
-/** What the options say about every table of the call. */
-function requestChoices(given: CommandArguments): Partial<TableRequest> {
-  const columns = given.text('columns');
-  const instrument = given.text('instrument');
-  const time = timeChoice(given);
-  const velocityUnit = given.choice('unit', ['m/s', 'km/s']);
-  return {
-    ...(columns === null ? {} : { columns: parseColumns(columns) }),
-    ...(instrument === null ? {} : { instrument }),
-    ...(time === null ? {} : { timeScale: time.scale }),
-    ...(time === null || time.offsetDays === null ? {} : { timeOffsetDays: time.offsetDays }),
-    ...(velocityUnit === null ? {} : { velocityUnit }),
-  };
 }
 
 function companionsChoice(given: CommandArguments): number | 'auto' | null {
@@ -110,8 +58,13 @@ function withOptions(base: Case, given: CommandArguments): Case {
       radiusSolar: given.quantity('star-radius', 'star radius') ?? base.star.radiusSolar,
       effectiveTemperatureK:
         given.quantity('star-temperature', 'temperature') ?? base.star.effectiveTemperatureK,
+      ...(base.star.densityGcc === undefined ? {} : { densityGcc: base.star.densityGcc }),
     },
-    tables: base.tables.map((request) => ({ ...request, ...choices })),
+    tables: base.tables.map((request) => ({
+      ...request,
+      ...choices,
+      lightCurve: { ...request.lightCurve, ...choices.lightCurve },
+    })),
     companions: withShape(companions ?? base.companions, given.isOn('circular')),
     drift: given.choice('drift', ['auto', 'none', 'linear', 'quadratic']) ?? base.drift,
     circular: given.isOn('circular') ? true : base.circular,
@@ -145,18 +98,18 @@ export async function requestedCase(given: CommandArguments): Promise<Case> {
   return withOptions(first === '-' ? { ...base, target: INPUT_NAME } : base, given);
 }
 
-async function readOne(request: TableRequest, terminal: Terminal): Promise<VelocityTable> {
-  if (request.path !== '-') return readTable(request);
+async function readOne(request: TableRequest, terminal: Terminal): Promise<AnyTable> {
+  if (request.path !== '-') return readAnyTable(request);
   const { text, complete } = await terminal.readInput(INPUT_LIMIT_BYTES);
   if (!complete)
     throw new UsageError(`standard input holds more than ${INPUT_LIMIT_BYTES / 1024 / 1024} MiB`, {
-      hint: 'is it a table of velocities?',
+      hint: 'is it a table?',
     });
-  return parseTable(text, INPUT_NAME, { ...request, path: INPUT_NAME });
+  return parseAnyTable(text, INPUT_NAME, { ...request, path: INPUT_NAME });
 }
 
 export interface ReadTables {
-  readonly tables: readonly VelocityTable[];
+  readonly tables: readonly AnyTable[];
   /** All problems of the tables that could not be read; `null` without any. */
   readonly failure: InputDataError | null;
 }
@@ -166,7 +119,7 @@ export async function readAllTables(
   requests: readonly TableRequest[],
   terminal: Terminal,
 ): Promise<ReadTables> {
-  const tables: VelocityTable[] = [];
+  const tables: AnyTable[] = [];
   const issues: InputDataError['issues'][number][] = [];
   for (const request of requests)
     try {
@@ -187,20 +140,68 @@ export function noticeText(notice: { readonly message: string; readonly lines: r
   return `${plainLabel(notice.message, 400)}${lines}`;
 }
 
-/** @throws InputDataError with the problems of all tables together */
+function showNotices(
+  notices: readonly { readonly path: string; readonly message: string; readonly lines: readonly number[] }[],
+  given: CommandArguments,
+  terminal: Terminal,
+): void {
+  if (given.isOn('quiet')) return;
+  for (const notice of notices)
+    terminal.note(
+      `${terminal.paint('caution', 'note:', 'note')} ${plainLabel(notice.path)}: ${noticeText(notice)}`,
+    );
+}
+
+/**
+ * Everything observed, of every kind; what is to be known of the tables is noted.
+ *
+ * @throws InputDataError with the problems of all tables together
+ */
+export async function readObservations(
+  theCase: Case,
+  given: CommandArguments,
+  terminal: Terminal,
+): Promise<Observations> {
+  const { tables, failure } = await readAllTables(theCase.tables, terminal);
+  if (failure !== null) throw failure;
+  const observations = gatherObservations(tables);
+  checkChoices(theCase, observations);
+  const others = [...observations.lightCurves, ...observations.midTimes];
+  const notices = [
+    ...(observations.velocities?.notices ?? []),
+    ...others.flatMap((table) => table.notices.map((notice) => ({ ...notice, path: table.path }))),
+  ];
+  showNotices(notices, given, terminal);
+  return observations;
+}
+
+const CONTENT_WORDS = { 'light curve': 'a light curve', 'mid-times': 'mid-times' } as const;
+
+/**
+ * For commands that fit velocities only.
+ *
+ * @throws InputDataError with the problems of all tables together, and for a table that holds anything but velocities
+ */
 export async function readVelocities(
   theCase: Case,
   given: CommandArguments,
   terminal: Terminal,
 ): Promise<VelocitySet> {
   const { tables, failure } = await readAllTables(theCase.tables, terminal);
-  if (failure !== null) throw failure;
-  const velocities = combineTables(tables);
-  checkInstrumentChoices(theCase, velocities);
-  if (!given.isOn('quiet'))
-    for (const notice of velocities.notices)
-      terminal.note(
-        `${terminal.paint('caution', 'note:', 'note')} ${plainLabel(notice.path)}: ${noticeText(notice)}`,
-      );
-  return velocities;
+  const issues = [...(failure?.issues ?? [])];
+  const velocities: VelocityTable[] = [];
+  for (const table of tables) {
+    if (table.content === 'velocities') velocities.push(table);
+    else
+      issues.push({
+        code: 'not-velocities', file: table.path, line: null, column: null, field: null,
+        message: `the table holds ${CONTENT_WORDS[table.content]}; this command reads velocities only`,
+        hint: 'leave the table out; if it does hold velocities, say so with --holds velocities',
+      }); // prettier-ignore
+  }
+  if (issues.length > 0) throw new InputDataError(issues);
+  const set = combineTables(velocities);
+  checkInstrumentChoices(theCase, set);
+  showNotices(set.notices, given, terminal);
+  return set;
 }

@@ -17,10 +17,13 @@ function option(name: string, group: OptionSpec['group'], value: string | null, 
 
 /** How a table is to be read, where the table itself does not say. */
 export const INPUT_OPTIONS: readonly OptionSpec[] = [
-  option('columns', 'Input', 'LIST', 'which column is what, by label or number: "time=BJD,velocity=2,velocity-error=3,instrument=site,quality=flag" (default: recognised)'),
+  option('columns', 'Input', 'LIST', 'which column is what, by label or number: "time=BJD,velocity=2,velocity-error=3,instrument=site,quality=flag"; further flux, magnitude, error, exposure, band, cycle, source, kind (default: recognised)'),
+  option('holds', 'Input', 'WHAT', 'velocities, light-curve or mid-times (default: recognised)'),
   option('instrument', 'Input', 'NAME', "the table's instrument (default: its instrument column, else the file name)"),
   option('time-scale', 'Input', 'SCALE', 'BJD_TDB, BJD_UTC, BJD, HJD_UTC, HJD_TT, HJD, JD_UTC, JD_TT or JD, with the days that are left out: "BJD_TDB - 2457000" (default: as the header says)'),
-  option('unit', 'Input', 'UNIT', 'unit of the velocities and their errors, m/s or km/s (default: as the header says, else m/s)'),
+  option('unit', 'Input', 'UNIT', 'unit of the velocities and their errors, m/s or km/s (default: as the header says, else m/s); of a light curve relative, counts, mag or ppm'),
+  option('exposure', 'Input', 'TIME', 'length of the exposures of a light curve, e.g. "60 s" (default: as the table says, else the usual distance of its rows)'),
+  option('band', 'Input', 'NAME', 'passband of a light curve (default: as the table says, else its name)'),
 ]; // prettier-ignore
 
 export const TARGET_OPTION: OptionSpec = option('target', 'Input', 'NAME', 'name of the target (default: from the case, else the first table)'); // prettier-ignore
@@ -48,6 +51,8 @@ export const DRAW_LIMIT_OPTION: OptionSpec = option('draw-limit', 'Uncertainty',
 export const SEED_OPTION: OptionSpec = option('seed', 'Uncertainty', 'N', 'seed of all random numbers, a whole number from 0 (default: 1)'); // prettier-ignore
 
 export const FORCE_OPTION: OptionSpec = option('force', 'Output', null, 'replace what an earlier run has written'); // prettier-ignore
+
+export const TIMINGS_OPTION: OptionSpec = option('timings-out', 'Output', 'FILE', 'also write the mid-time of each transit of the light curves, measured by itself, as a table that timing reads (default: none)'); // prettier-ignore
 
 export function outOption(help: string): OptionSpec {
   return option('out', 'Output', 'DIR', help);

@@ -2,19 +2,28 @@
 import type { Solved } from '../solving/types.js';
 import { elementsTable } from './elements-table.js';
 import { solutionJson } from './json.js';
+import { lightCurveTable } from './light-curve-table.js';
+import { midTimesTable } from './mid-times-table.js';
 import { modelTable } from './model-table.js';
 import { report } from './report.js';
 import { residualsTable } from './residuals-table.js';
+import { hasVelocities } from './observed.js';
 import { posteriorTable, thinningOf } from './posterior-table.js';
 import { runJson, type RunFacts } from './run-record.js';
 import type { DossierFile } from './write-dossier.js';
+
+function hasAny(list: readonly unknown[] | undefined): boolean {
+  return list !== undefined && list.length > 0;
+}
 
 /** Texts and tables by name, `null` leaves one out; a new output format is one file and its line here. */
 const WRITERS: readonly (readonly [string, (solved: Solved) => string | null])[] = [
   ['solution.json', ({ record }) => solutionJson(record)],
   ['elements.csv', ({ record }) => elementsTable(record)],
-  ['residuals.csv', residualsTable],
-  ['model.csv', modelTable],
+  ['residuals.csv', (solved) => (hasVelocities(solved) ? residualsTable(solved) : null)],
+  ['model.csv', (solved) => (hasVelocities(solved) ? modelTable(solved) : null)],
+  ['light-curve.csv', ({ photometry }) => (hasAny(photometry?.fitted) ? lightCurveTable(photometry!) : null)],
+  ['mid-times.csv', ({ photometry }) => (hasAny(photometry?.midTimes) ? midTimesTable(photometry!) : null)],
   ['posterior.csv', ({ posterior }) => (posterior === null ? null : posteriorTable(posterior))],
 ];
 

@@ -14,6 +14,7 @@ const TWO_SIGMA = 0.954499736103642;
 export const keyOf = {
   element: (letter: string, element: string): string => `companions.${letter}.elements.${element}`,
   jitter: (instrument: string): string => `velocity.instruments.${instrument}.jitter`,
+  lightCurveJitter: (table: string): string => `photometry.lightCurves.${table}.jitter`,
   zeroPoint: (instrument: string): string => `velocity.instruments.${instrument}.zeroPoint`,
 } as const;
 

@@ -1,8 +1,9 @@
 /** `elements.csv`: every number of the solution, one a row, at full precision. */
+import type { PhotometryRecord } from '../solving/transit-types.js';
 import type { Quantity, SolutionRecord } from '../solving/types.js';
 import { csvLines, csvText } from './escape.js';
 import { machineNumber } from './numbers.js';
-import { DERIVED_ORDER, ELEMENT_ORDER } from './titles.js';
+import { titledDerived, titledElements } from './titles.js';
 
 function row(name: string, quantity: Quantity): string[] {
   return [
@@ -16,9 +17,41 @@ function row(name: string, quantity: Quantity): string[] {
   ];
 }
 
+function photometryRows(photometry: PhotometryRecord): string[][] {
+  return [
+    row('photometry.starDensity', photometry.starDensity),
+    row('photometry.starDensityGiven', photometry.starDensityGiven),
+    ...photometry.bands.flatMap(({ name, u1, u2, occultationDepths }) => [
+      row(`photometry.bands.${name}.u1`, u1),
+      row(`photometry.bands.${name}.u2`, u2),
+      ...Object.entries(occultationDepths ?? {}).map(([letter, depth]) =>
+        row(`photometry.bands.${name}.occultationDepths.${letter}`, depth),
+      ),
+    ]),
+    ...photometry.lightCurves.flatMap(({ name, jitter, dilution, correlatedNoise }) => [
+      row(`photometry.lightCurves.${name}.jitter`, jitter),
+      row(`photometry.lightCurves.${name}.dilution`, dilution),
+      ...(correlatedNoise === null
+        ? []
+        : [
+            row(`photometry.lightCurves.${name}.correlatedNoise.amplitude`, correlatedNoise.amplitude),
+            row(`photometry.lightCurves.${name}.correlatedNoise.timescale`, correlatedNoise.timescale),
+          ]),
+    ]),
+    ...photometry.events.flatMap(({ letter, table, cycle, midTime, oMinusC }) => [
+      row(`photometry.events.${letter}.${table}.${cycle}.midTime`, midTime),
+      row(`photometry.events.${letter}.${table}.${cycle}.oMinusC`, oMinusC),
+    ]),
+    ...photometry.midTimes.map(({ letter, path, jitter }) =>
+      row(`photometry.midTimes.${letter}.${path}.jitter`, jitter),
+    ),
+  ];
+}
+
 /**
  * Columns: name, value, sigma, lower, upper (central 68.3 %), unit, note (`fixed`, or why a value is missing).
- * Names follow the keys of `solution.json`: `companions.b.period`, `instruments.north.jitter`, `drift.slope`.
+ * Names follow the keys of `solution.json`: `companions.b.period`, `instruments.north.jitter`, `drift.slope`;
+ * an event of a light curve is `photometry.events.<letter>.<table>.<cycle>`. Without velocities there is no drift.
  */
 export function elementsTable(record: SolutionRecord): string {
   const rows: string[][] = [['name', 'value', 'sigma', 'lower', 'upper', 'unit', 'note']];
@@ -27,8 +60,8 @@ export function elementsTable(record: SolutionRecord): string {
   rows.push(row('star.effectiveTemperature', record.star.effectiveTemperature));
   for (const companion of record.companions) {
     const owner = `companions.${companion.letter}`;
-    for (const key of ELEMENT_ORDER) rows.push(row(`${owner}.${key}`, companion.elements[key]));
-    for (const key of DERIVED_ORDER) rows.push(row(`${owner}.${key}`, companion.derived[key]));
+    for (const { key, quantity } of [...titledElements(companion), ...titledDerived(companion)])
+      rows.push(row(`${owner}.${key}`, quantity));
   }
   for (const neighbour of record.neighbours)
     rows.push(
@@ -38,7 +71,10 @@ export function elementsTable(record: SolutionRecord): string {
     rows.push(row(`instruments.${instrument.name}.zeroPoint`, instrument.zeroPoint));
     rows.push(row(`instruments.${instrument.name}.jitter`, instrument.jitter));
   }
-  rows.push(row('drift.slope', record.velocity.slope));
-  rows.push(row('drift.curvature', record.velocity.curvature));
+  if (record.velocity.instruments.length > 0 || record.photometry === undefined) {
+    rows.push(row('drift.slope', record.velocity.slope));
+    rows.push(row('drift.curvature', record.velocity.curvature));
+  }
+  if (record.photometry !== undefined) rows.push(...photometryRows(record.photometry));
   return csvLines(rows);
 }

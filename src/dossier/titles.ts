@@ -1,5 +1,6 @@
 /** What the keys of a solution are called in front of people, and in which order they are shown. */
-import type { DerivedKey, ElementKey } from '../solving/types.js';
+import type { TransitDerivedKey, TransitElementKey } from '../solving/transit-types.js';
+import type { CompanionRecord, DerivedKey, ElementKey, Quantity } from '../solving/types.js';
 
 export interface Title {
   readonly words: string;
@@ -37,8 +38,73 @@ export const DERIVED_TITLES: Readonly<Record<DerivedKey, Title>> = {
   hillRadius: { words: 'Hill radius' },
 };
 
+export const TRANSIT_ELEMENT_TITLES: Readonly<Record<TransitElementKey, Title>> = {
+  radiusRatio: { words: "radius in units of the star's" },
+  impactParameter: { words: 'impact parameter of the transit (stellar radii)', zeroBounded: true },
+  scaledSemiMajorAxis: { words: 'semi-major axis in stellar radii' },
+  inclination: { words: 'inclination' },
+};
+
+export const TRANSIT_DERIVED_TITLES: Readonly<Record<TransitDerivedKey, Title>> = {
+  radius: { words: 'radius' },
+  midTransitDepth: { words: 'loss of light in mid-transit' },
+  totalDuration: { words: 'duration, first to last contact' },
+  fullDuration: { words: 'duration, second to third contact' },
+  meanDensity: { words: 'mean density' },
+  surfaceGravity: { words: 'surface gravity' },
+  timeOfOccultation: { words: 'time of occultation' },
+  scaleHeight: { words: 'scale height of an atmosphere (molecular weight 2.3)' },
+  rossiterMcLaughlin: { words: 'velocity anomaly in transit, per km/s of projected stellar rotation' },
+};
+
 export const ELEMENT_ORDER = Object.keys(ELEMENT_TITLES) as readonly ElementKey[];
 export const DERIVED_ORDER = Object.keys(DERIVED_TITLES) as readonly DerivedKey[];
+
+const TRANSIT_ELEMENT_ORDER = Object.keys(TRANSIT_ELEMENT_TITLES) as readonly TransitElementKey[];
+const TRANSIT_DERIVED_ORDER = Object.keys(TRANSIT_DERIVED_TITLES) as readonly TransitDerivedKey[];
+
+/** Guesses for a companion of which no transit is known; idle where a light curve shows one. */
+const ONLY_WITHOUT_TRANSIT: readonly DerivedKey[] = ['transitProbability', 'transitDuration', 'transitDepth'];
+
+/** A light curve shows its transits. */
+export function isTransiting({ elements }: CompanionRecord): boolean {
+  return elements.radiusRatio !== undefined;
+}
+
+/** A quantity of a companion with its key and what it is called. */
+export interface TitledQuantity {
+  readonly key: string;
+  readonly title: Title;
+  readonly quantity: Quantity;
+}
+
+/** All elements of a companion, those of its transits last. */
+export function titledElements({ elements }: CompanionRecord): TitledQuantity[] {
+  return [
+    ...ELEMENT_ORDER.map((key) => ({ key, title: ELEMENT_TITLES[key], quantity: elements[key] })),
+    ...TRANSIT_ELEMENT_ORDER.flatMap((key) => {
+      const quantity = elements[key];
+      return quantity === undefined ? [] : [{ key, title: TRANSIT_ELEMENT_TITLES[key], quantity }];
+    }),
+  ];
+}
+
+/** All derived quantities of a companion, those of its transits last. */
+export function titledDerived({ derived }: CompanionRecord): TitledQuantity[] {
+  return [
+    ...DERIVED_ORDER.map((key) => ({ key, title: DERIVED_TITLES[key], quantity: derived[key] })),
+    ...TRANSIT_DERIVED_ORDER.flatMap((key) => {
+      const quantity = derived[key];
+      return quantity === undefined ? [] : [{ key, title: TRANSIT_DERIVED_TITLES[key], quantity }];
+    }),
+  ];
+}
+
+/** The derived quantities that say something to a reader: guesses about transits are left out where these are seen. */
+export function readableDerived(companion: CompanionRecord): TitledQuantity[] {
+  const idle: readonly string[] = isTransiting(companion) ? ONLY_WITHOUT_TRANSIT : [];
+  return titledDerived(companion).filter(({ key }) => !idle.includes(key));
+}
 
 const COUNT_WORDS = ['no', 'one', 'two', 'three', 'four', 'five', 'six', 'seven', 'eight', 'nine'];
 

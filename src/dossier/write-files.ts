@@ -15,6 +15,24 @@ async function exists(path: string): Promise<boolean> {
   }
 }
 
+/** @throws UsageError when one of the files exists and `force` is not set */
+export async function checkFiles(
+  folder: string,
+  names: readonly string[],
+  choices: WriteChoices,
+): Promise<void> {
+  const paths = names.map((name) => join(folder, name));
+  if (!choices.force) {
+    const standing: string[] = [];
+    for (const path of paths) if (await exists(path)) standing.push(path);
+    if (standing.length > 0)
+      throw new UsageError(
+        `${standing.length === 1 ? 'the file' : `${standing.length} files, among them`} "${standing[0]!}" exist${standing.length === 1 ? 's' : ''} already`,
+        { allowed: 'new files', hint: 'add --force to overwrite, or choose another folder with --out DIR' },
+      );
+  }
+}
+
 /**
  * Writes each file under a passing name first, and gives them their names only when all are complete.
  *
@@ -26,15 +44,11 @@ export async function writeFiles(
   choices: WriteChoices,
 ): Promise<string[]> {
   const paths = files.map((file) => join(folder, file.name));
-  if (!choices.force) {
-    const standing: string[] = [];
-    for (const path of paths) if (await exists(path)) standing.push(path);
-    if (standing.length > 0)
-      throw new UsageError(
-        `${standing.length === 1 ? 'the file' : `${standing.length} files, among them`} "${standing[0]!}" exist${standing.length === 1 ? 's' : ''} already`,
-        { allowed: 'new files', hint: 'add --force to overwrite, or choose another folder with --out DIR' },
-      );
-  }
+  await checkFiles(
+    folder,
+    files.map(({ name }) => name),
+    choices,
+  );
   const passing = paths.map((path) => `${path}.${randomUUID().slice(0, 8)}`);
   try {
     await mkdir(folder, { recursive: true });

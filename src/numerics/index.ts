@@ -26,6 +26,22 @@ export type {
   ValueAndGradient,
 } from './minimise.js';
 
+// Correlated noise, and linear parameters integrated out
+export { DampedOscillatorProcess } from './gaussian-process/damped-oscillator-process.js';
+export {
+  drivenOscillator,
+  exponentialNoise,
+  matern32,
+  recurrentNoise,
+  smoothNoise,
+  sumOfKernels,
+} from './gaussian-process/kernels.js';
+export type { CovarianceKernel } from './gaussian-process/kernels.js';
+export { covarianceAt, TERM_SIZE, writeOscillation } from './gaussian-process/oscillator-terms.js';
+export { MarginalKernelLikelihood } from './marginal-kernel.js';
+export { MarginalLinearLikelihood, MarginalProcessLikelihood } from './marginal-linear.js';
+export type { LinearNuisance, MarginalLikelihood } from './marginal-linear.js';
+
 // Functions and transforms
 export {
   erf,

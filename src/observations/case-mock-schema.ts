@@ -7,12 +7,22 @@ import {
   ECCENTRICITY,
   mapping,
   NOT_NEGATIVE,
+  plainFileName,
   POSITIVE,
   single,
   text,
   wholeNumber,
   word,
 } from './case-values.js';
+import {
+  checkMockPhotometry,
+  mockBands,
+  mockLightCurve,
+  mockMidTimes,
+  type LightCurveEntry,
+  type LimbEntry,
+  type MidTimesEntry,
+} from './case-mock-photometry-schema.js';
 import { quoted } from './text.js';
 
 interface SiteEntry {
@@ -27,12 +37,6 @@ const site: z.ZodType<SiteEntry> = mapping({
   latitude: single('angle', between(-90, 90)),
   longitude: single('angle', between(-180, 360)), // positive east
   elevation: single('height', between(-500, 9000)),
-});
-
-/** `mock` writes into its own folder only: a name with a path in it is refused. */
-const plainFileName: z.ZodType<string> = text.superRefine((name, context) => {
-  if (/[/\\]|^\.\.?$|[\u0000-\u001f]/.test(name))
-    complain(context, `found ${quoted(name)}; a plain file name is expected, without a folder`);
 });
 
 interface InstrumentEntry {
@@ -69,6 +73,9 @@ interface CompanionEntry {
   readonly 'argument-of-periastron': number;
   readonly 'time-of-periastron': number;
   readonly 'semi-amplitude': number;
+  readonly 'radius-ratio'?: number | undefined;
+  readonly 'impact-parameter'?: number | undefined;
+  readonly inclination?: number | undefined;
 }
 
 const companion: z.ZodType<CompanionEntry> = mapping({
@@ -77,6 +84,26 @@ const companion: z.ZodType<CompanionEntry> = mapping({
   'argument-of-periastron': single('angle', between(-360, 360)).default(90),
   'time-of-periastron': single('date', POSITIVE),
   'semi-amplitude': single('velocity', NOT_NEGATIVE),
+  'radius-ratio': single('number', {
+    allows: (value) => value > 0 && value <= 2,
+    words: 'must be above 0 and at most 2',
+  }).optional(),
+  'impact-parameter': single('number', between(-5, 5)).optional(),
+  inclination: single('angle', between(0, 180)).optional(),
+}).superRefine((entry, context) => {
+  const paths = ['impact-parameter', 'inclination'].filter(
+    (key) => entry[key as 'impact-parameter' | 'inclination'] !== undefined,
+  );
+  if (paths.length === 2)
+    complain(context, 'impact-parameter and inclination say the same', 'keep one of them', ['inclination']);
+  if (paths.length > 0 && entry['radius-ratio'] === undefined)
+    complain(context, `${paths[0]!} needs a radius-ratio: without one there are no transits`, '', [
+      paths[0]!,
+    ]);
+  if (paths.length === 0 && entry['radius-ratio'] !== undefined)
+    complain(context, 'radius-ratio needs an impact-parameter or an inclination', 'impact-parameter: 0.3', [
+      'radius-ratio',
+    ]);
 });
 
 /** The section as read, in canonical units (angles deg, velocities m/s, dates BJD_TDB), its defaults filled in. */
@@ -87,6 +114,9 @@ export interface MockEntry {
   readonly 'maximum-airmass': number;
   readonly twilight: number;
   readonly instruments: readonly InstrumentEntry[];
+  readonly 'light-curves': readonly LightCurveEntry[];
+  readonly 'mid-times': readonly MidTimesEntry[];
+  readonly bands: Readonly<Record<string, LimbEntry>>;
   readonly companions: readonly CompanionEntry[];
   readonly slope: number;
   readonly curvature: number;
@@ -102,12 +132,19 @@ export const mockSchema: z.ZodType<MockEntry> = mapping({
   'weather-loss': single('number', between(0, 0.99)).default(0.3),
   'maximum-airmass': single('number', between(1, 10)).default(2),
   twilight: single('angle', between(-18, 0)).default(-12),
-  instruments: z.array(instrument).min(1, { error: 'at least one instrument is needed' }).max(50),
+  instruments: z.array(instrument).max(50).default([]),
+  'light-curves': z.array(mockLightCurve).max(50).default([]),
+  'mid-times': z.array(mockMidTimes).max(50).default([]),
+  bands: mockBands,
   companions: z.array(companion).max(20).default([]),
   slope: single('velocity per year', ANY).default(0),
   curvature: single('velocity per year squared', ANY).default(0),
   epoch: single('date', POSITIVE).optional(),
-}).superRefine(({ instruments }, context) => {
+}).superRefine((mock, context) => {
+  const { instruments } = mock;
+  if (instruments.length + mock['light-curves'].length + mock['mid-times'].length === 0)
+    complain(context, 'at least one instrument is needed, or a light curve, or mid-times');
+  checkMockPhotometry(mock, context);
   const seen = new Set<string>();
   for (const [index, { name }] of instruments.entries()) {
     if (seen.has(name))
@@ -115,3 +152,20 @@ export const mockSchema: z.ZodType<MockEntry> = mapping({
     seen.add(name);
   }
 });
+
+/** Transits need the size and the mass of the star, which stand outside of the section. */
+export function checkMockStar(
+  mock: MockEntry,
+  star: { readonly mass?: unknown; readonly radius?: unknown } | undefined,
+  context: z.core.$RefinementCtx,
+): void {
+  if (star?.mass !== undefined && star.radius !== undefined) return;
+  for (const [i, entry] of mock.companions.entries())
+    if (entry['radius-ratio'] !== undefined)
+      complain(
+        context,
+        'transits need the mass and the radius of the star',
+        'add star: { mass: 0.9 M_sun, radius: 0.9 R_sun } to the case',
+        ['mock', 'companions', i, 'radius-ratio'],
+      );
+}

@@ -1,5 +1,5 @@
 /** From a case file to a `Case`; and the same from bare tables and options. */
-import { dirname, isAbsolute, join } from 'node:path';
+import { dirname } from 'node:path';
 import { InputDataError, UsageError } from '../errors.js';
 import { addSchemaIssues } from './case-issues.js';
 import { mockPlan } from './case-mock.js';
@@ -9,24 +9,24 @@ import {
   isZero,
   type CaseEntry,
   type CompanionEntry,
-  type TableEntry,
 } from './case-schema.js';
-import { readYaml, type Place, type YamlText } from './case-yaml.js';
+import { rememberPlaces } from './case-places.js';
+import { toRequest } from './case-table.js';
+import { readYaml, type YamlText } from './case-yaml.js';
 import { IssueList } from './issues.js';
 import { parseMeasured } from './quantity.js';
 import { readTextFile } from './read-text.js';
-import { didYouMean } from './suggest.js';
 import { requestFor } from './table-reader.js';
 import { fileStem, quoted, withoutControls } from './text.js';
 import type {
+  BandChoice,
   Case,
   CompanionChoice,
   ElementChoice,
   ElementName,
   InstrumentChoice,
   Measured,
-  TableRequest,
-  VelocitySet,
+  TransitChoice,
 } from './types.js';
 import type { QuantityKind } from './units.js';
 
@@ -79,6 +79,7 @@ function toCase(entry: CaseEntry, path: string, yaml: YamlText): Case {
       massSolar: entry.star?.mass ?? null,
       radiusSolar: entry.star?.radius ?? null,
       effectiveTemperatureK: entry.star?.temperature ?? null,
+      ...(entry.star?.density === undefined ? {} : { densityGcc: entry.star.density }),
     },
     tables: (entry.tables ?? []).map((table) => toRequest(table, dirname(path))),
     companions: Array.isArray(companions) ? toCompanions(companions, circular) : companions,
@@ -86,27 +87,12 @@ function toCase(entry: CaseEntry, path: string, yaml: YamlText): Case {
     drift: entry.drift ?? 'auto',
     circular,
     instruments: toInstruments(entry.instruments ?? {}, yaml),
+    ...(entry.bands === undefined ? {} : { bands: toBands(entry.bands, yaml) }),
     periodRangeDays: {
       low: entry.search?.['shortest-period'] ?? null,
       high: entry.search?.['longest-period'] ?? null,
     },
-    mock: entry.mock === undefined ? null : mockPlan(entry.mock),
-  };
-}
-
-function toRequest(table: TableEntry, folder: string): TableRequest {
-  const { error, ...others } = table.columns ?? {};
-  const columns: Record<string, string> = {};
-  for (const [meaning, column] of Object.entries({ ...others, 'velocity-error': error })) {
-    if (column !== undefined) columns[meaning] = String(column);
-  }
-  return {
-    path: isAbsolute(table.file) ? table.file : join(folder, table.file),
-    instrument: table.instrument ?? null,
-    timeScale: table.time?.scale ?? null,
-    timeOffsetDays: table.time?.offsetDays ?? null,
-    velocityUnit: table.unit ?? null,
-    columns,
+    mock: entry.mock === undefined ? null : mockPlan(entry.mock, entry.star),
   };
 }
 
@@ -132,15 +118,22 @@ function toCompanions(list: readonly CompanionEntry[], circular: boolean | 'auto
       circular: entry.circular ?? stated,
       elements,
       inclinationDeg: entry.inclination ?? null,
+      ...transitOf(entry),
     };
   });
 }
 
-/**
- * Where a case file names each instrument. A case is a plain value without places; this one is needed once more, when
- * the tables are there to hold the names against. It follows the choices through copies of the case.
- */
-const instrumentPlaces = new WeakMap<Case['instruments'], ReadonlyMap<string, Place>>();
+function transitOf(entry: CompanionEntry): { readonly transit?: TransitChoice } {
+  const { 'radius-ratio': radiusRatio, 'impact-parameter': impactParameter, occultation } = entry;
+  if (radiusRatio === undefined && impactParameter === undefined && occultation === undefined) return {};
+  return {
+    transit: {
+      ...(radiusRatio === undefined ? {} : { radiusRatio }),
+      ...(impactParameter === undefined ? {} : { impactParameter }),
+      ...(occultation === undefined ? {} : { occultation }),
+    },
+  };
+}
 
 /** Without a prototype, so that an instrument called `constructor` finds nothing that was not written. */
 function toInstruments(
@@ -148,7 +141,6 @@ function toInstruments(
   yaml: YamlText,
 ): Readonly<Record<string, InstrumentChoice>> {
   const choices = Object.create(null) as Record<string, InstrumentChoice>;
-  const places = new Map<string, Place>();
   for (const [name, entry] of Object.entries(entries)) {
     const zeroPoint = entry['zero-point'] ?? null;
     // The schema refuses a range here.
@@ -156,31 +148,20 @@ function toInstruments(
       zeroPointMps: zeroPoint?.kind === 'range' ? null : zeroPoint,
       jitterMps: entry.jitter ?? null,
     };
-    places.set(name, yaml.placeOfKey(['instruments'], name));
   }
-  instrumentPlaces.set(choices, places);
+  rememberPlaces(choices, 'instruments', yaml);
   return choices;
 }
 
-/**
- * Holds the instruments that a case makes choices for against those that the tables have.
- *
- * @throws InputDataError naming each unknown instrument with its line in the case, and the one that was meant or all that there are
- */
-export function checkInstrumentChoices(theCase: Case, velocities: VelocitySet): void {
-  const issues = new IssueList(theCase.path ?? 'case');
-  const places = instrumentPlaces.get(theCase.instruments);
-  for (const name of Object.keys(theCase.instruments)) {
-    if (velocities.instruments.includes(name)) continue;
-    issues.add({
-      code: 'unknown-instrument',
-      ...places?.get(name),
-      field: `instruments.${name}`,
-      message: `no table has an instrument ${quoted(name)}`,
-      hint: didYouMean(name, velocities.instruments),
-    });
-  }
-  issues.throwIfAny();
+function toBands(
+  entries: NonNullable<CaseEntry['bands']>,
+  yaml: YamlText,
+): Readonly<Record<string, BandChoice>> {
+  const choices = Object.create(null) as Record<string, BandChoice>;
+  for (const [name, { u1, u2 }] of Object.entries(entries))
+    choices[name] = { u1: u1 ?? null, u2: u2 ?? null };
+  rememberPlaces(choices, 'bands', yaml);
+  return choices;
 }
 
 /** Options of the command line, as text; what is absent keeps its default. */

@@ -19,10 +19,10 @@ import {
   text,
   wholeNumber,
   word,
+  yesOrNo,
 } from './case-values.js';
-import { mockSchema, type MockEntry } from './case-mock-schema.js';
-import { quoted } from './text.js';
-import { readTimeLabel, type TimeLabel } from './time-label.js';
+import { checkMockStar, mockSchema, type MockEntry } from './case-mock-schema.js';
+import { table, type TableEntry } from './case-table-schema.js';
 import type { DriftChoice, ElementChoice, Measured } from './types.js';
 
 export const MOST_COMPANIONS = 20;
@@ -32,68 +32,15 @@ interface StarEntry {
   readonly mass?: Measured | undefined;
   readonly radius?: Measured | undefined;
   readonly temperature?: Measured | undefined;
+  readonly density?: Measured | undefined;
 }
 
 const star: z.ZodType<StarEntry> = mapping({
   mass: measured('star mass', POSITIVE).optional(),
   radius: measured('star radius', POSITIVE).optional(),
   temperature: measured('temperature', POSITIVE).optional(),
+  density: measured('density', POSITIVE).optional(),
 });
-
-/** A label of the header, or a position from 1. */
-type ColumnName = string | number;
-
-const columnName: z.ZodType<ColumnName> = z.union([z.string().min(1).max(200), z.int().min(1).max(500)], {
-  error: 'a label of the header, or a position from 1, is expected',
-});
-
-const timeDeclaration: z.ZodType<TimeLabel> = z
-  .string({ error: 'a time scale is expected, e.g. BJD_TDB or BJD_TDB - 2450000' })
-  .transform((written, context): TimeLabel => {
-    const label = readTimeLabel(written);
-    if (label !== null && label.scale !== 'unknown') return label;
-    complain(
-      context,
-      `found ${quoted(written)}; a time scale is expected`,
-      'one of BJD_TDB, BJD_UTC, BJD, HJD_UTC, HJD_TT, HJD, JD_UTC, JD_TT, JD, MJD, with an offset if need be: BJD_TDB - 2450000',
-    );
-    return z.NEVER;
-  });
-
-export interface TableEntry {
-  readonly file: string;
-  readonly instrument?: string | undefined;
-  readonly unit?: 'm/s' | 'km/s' | undefined;
-  readonly time?: TimeLabel | undefined;
-  readonly columns?:
-    | {
-        readonly time?: ColumnName | undefined;
-        readonly velocity?: ColumnName | undefined;
-        readonly error?: ColumnName | undefined;
-        readonly instrument?: ColumnName | undefined;
-        readonly quality?: ColumnName | undefined;
-      }
-    | undefined;
-}
-
-const tableMapping: z.ZodType<TableEntry> = mapping({
-  file: text,
-  instrument: text.optional(),
-  unit: word(['m/s', 'km/s']).optional(),
-  time: timeDeclaration.optional(),
-  columns: mapping({
-    time: columnName.optional(),
-    velocity: columnName.optional(),
-    error: columnName.optional(),
-    instrument: columnName.optional(),
-    quality: columnName.optional(),
-  }).optional(),
-});
-
-/** A file name alone, or a mapping with what is declared of it. */
-const table: z.ZodType<TableEntry> = byShape<TableEntry>((value) =>
-  typeof value === 'object' && value !== null ? tableMapping : text.transform((file) => ({ file })),
-);
 
 export interface CompanionEntry {
   readonly letter?: string | undefined;
@@ -104,6 +51,9 @@ export interface CompanionEntry {
   readonly 'time-of-inferior-conjunction'?: ElementChoice | undefined;
   readonly 'semi-amplitude'?: ElementChoice | undefined;
   readonly inclination?: Measured | undefined;
+  readonly 'radius-ratio'?: ElementChoice | undefined;
+  readonly 'impact-parameter'?: ElementChoice | undefined;
+  readonly occultation?: boolean | undefined;
   readonly circular?: boolean | 'auto' | undefined;
 }
 
@@ -122,6 +72,9 @@ const companionMapping: z.ZodType<CompanionEntry> = mapping({
     allows: (value) => value > 0 && value < 180,
     words: 'must lie between 0 and 180 deg, both excluded',
   }).optional(),
+  'radius-ratio': choice('number', POSITIVE).optional(),
+  'impact-parameter': choice('number', NOT_NEGATIVE).optional(),
+  occultation: yesOrNo.optional(),
   circular: autoOrBoolean.optional(),
 }).superRefine((companion, context) => {
   const { eccentricity, circular } = companion;
@@ -135,6 +88,11 @@ const companionMapping: z.ZodType<CompanionEntry> = mapping({
       'keep one of them',
       ['time-of-inferior-conjunction'],
     );
+  }
+  if (companion.inclination !== undefined && companion['impact-parameter'] !== undefined) {
+    complain(context, 'inclination and impact-parameter both set the tilt of the orbit', 'keep one of them', [
+      'impact-parameter',
+    ]);
   }
   if (circular === true && eccentricity !== undefined && !isZero(eccentricity)) {
     complain(context, 'a circular orbit has eccentricity 0', 'leave out eccentricity or circular', [
@@ -200,6 +158,22 @@ const instrument: z.ZodType<InstrumentEntry> = mapping({
     );
 });
 
+interface BandEntry {
+  readonly u1?: Measured | undefined;
+  readonly u2?: Measured | undefined;
+}
+
+/** Of the quadratic law of limb darkening. */
+const COEFFICIENT = between(-1, 2);
+
+const band: z.ZodType<BandEntry> = mapping({
+  u1: measured('number', COEFFICIENT).optional(),
+  u2: measured('number', COEFFICIENT).optional(),
+}).superRefine((coefficients, context) => {
+  if (coefficients.u1 === undefined && coefficients.u2 === undefined)
+    complain(context, 'the band states no limb darkening', 'give u1, u2 or both: u1: 0.35 +- 0.05');
+});
+
 interface SearchEntry {
   readonly 'shortest-period'?: number | undefined;
   readonly 'longest-period'?: number | undefined;
@@ -225,6 +199,7 @@ export interface CaseEntry {
   readonly drift?: DriftChoice | undefined;
   readonly circular?: boolean | 'auto' | undefined;
   readonly instruments?: Readonly<Record<string, InstrumentEntry>> | undefined;
+  readonly bands?: Readonly<Record<string, BandEntry>> | undefined;
   readonly search?: SearchEntry | undefined;
   readonly mock?: MockEntry | undefined;
 }
@@ -237,10 +212,12 @@ export const caseSchema: z.ZodType<CaseEntry> = mapping({
   drift: word(['auto', 'none', 'linear', 'quadratic']).optional(),
   circular: autoOrBoolean.optional(),
   instruments: z.record(z.string().min(1).max(200), instrument).optional(),
+  bands: z.record(z.string().min(1).max(200), band).optional(),
   search: search.optional(),
   mock: mockSchema.optional(),
 }).superRefine((theCase, context) => {
   if ((theCase.tables ?? []).length === 0 && theCase.mock === undefined) {
     complain(context, 'the case names no table', 'add tables: [ north.csv ]');
   }
+  if (theCase.mock !== undefined) checkMockStar(theCase.mock, theCase.star, context);
 });

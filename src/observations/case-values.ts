@@ -112,6 +112,12 @@ export const text: z.ZodType<string> = z.unknown().transform((written, context):
   return z.NEVER;
 });
 
+/** `mock` writes into its own folder only: a name with a path in it is refused. */
+export const plainFileName: z.ZodType<string> = text.superRefine((name, context) => {
+  if (/[/\\]|^\.\.?$|[\u0000-\u001f]/.test(name))
+    complain(context, `found ${quoted(name)}; a plain file name is expected, without a folder`);
+});
+
 export function wholeNumber(low: number, high: number): z.ZodType<number> {
   return z.unknown().transform((written, context): number => {
     if (typeof written === 'number' && Number.isInteger(written) && written >= low && written <= high)
@@ -131,6 +137,14 @@ export const autoOrBoolean: z.ZodType<boolean | 'auto'> = z
     complain(context, `found ${describeValue(written)}; auto, true or false is expected`);
     return z.NEVER;
   });
+
+/** `true` or `false` (also `yes` and `no`). */
+export const yesOrNo: z.ZodType<boolean> = z.unknown().transform((written, context): boolean => {
+  if (written === true || written === 'yes') return true;
+  if (written === false || written === 'no') return false;
+  complain(context, `found ${describeValue(written)}; true or false is expected`);
+  return z.NEVER;
+});
 
 /** Checks a value with the schema that its shape asks for, so that the messages are those of that schema alone. */
 export function byShape<T>(schemaFor: (value: unknown) => z.ZodType<T>): z.ZodType<T> {

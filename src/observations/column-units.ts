@@ -1,5 +1,5 @@
 /** Which units and which time scale the chosen columns are in, and how that is known. Assumptions become notices. */
-import type { ColumnPlan } from './columns.js';
+import type { VelocityColumns } from './columns.js';
 import type { IssueList } from './issues.js';
 import { readLabel } from './labels.js';
 import type { TextTable } from './table-text.js';
@@ -21,7 +21,7 @@ export interface VelocityUnits {
 function unitOfColumn(
   index: number,
   table: TextTable,
-  plan: ColumnPlan,
+  plan: VelocityColumns,
   issues: IssueList,
   declared: boolean,
 ): SpeedUnit | null {
@@ -43,7 +43,7 @@ function unitOfColumn(
 
 export function decideVelocityUnits(
   table: TextTable,
-  plan: ColumnPlan,
+  plan: VelocityColumns,
   request: TableRequest,
   issues: IssueList,
   notices: TableNotice[],
@@ -96,19 +96,28 @@ export const SMALLEST_FULL_DATE = 2_300_000;
 /** ... and none above this (the year 2405). */
 export const LARGEST_FULL_DATE = 2_600_000;
 
+/** What is needed of a plan to understand its dates. */
+export interface TimeColumn {
+  readonly of: { get(meaning: 'time'): number | undefined };
+  readonly labels: readonly string[] | null;
+  readonly descriptions: VelocityColumns['descriptions'];
+}
+
 /**
  * @param times - the numbers of the time column, as written
  */
 export function decideTime(
-  table: TextTable,
-  plan: ColumnPlan,
+  table: Pick<TextTable, 'comments'>,
+  plan: TimeColumn,
   request: TableRequest,
   times: Float64Array,
   issues: IssueList,
   notices: TableNotice[],
 ): TimeReading {
   const index = plan.of.get('time')!;
-  const header = readTimeLabel(plan.labels?.[index] ?? '') ?? { scale: 'unknown', offsetDays: null };
+  const written = plan.labels?.[index] ?? '';
+  // `Tmid (BJD_TDB - 2450000)` is no name of a date, but contains one.
+  const header = readTimeLabel(written) ?? timeLabelsIn(written)[0] ?? { scale: 'unknown', offsetDays: null };
   const comment = commentTime(table, plan.descriptions.get(index)?.text ?? '', header);
   const scale =
     request.timeScale ?? (header.scale === 'unknown' ? (comment?.label.scale ?? 'unknown') : header.scale);
@@ -148,7 +157,7 @@ export function decideTime(
 
 /** The one time scale that the comments name; the description of the column itself counts before all others. */
 function commentTime(
-  table: TextTable,
+  table: Pick<TextTable, 'comments'>,
   description: string,
   header: TimeLabel,
 ): { label: TimeLabel; line: number | null } | null {

@@ -4,10 +4,6 @@
  */
 import type { ColumnReading, ElementChoice, Measured, TableNotice, TimeScale, VelocitySet } from './types.js';
 
-/** What a table holds. */
-export const TABLE_CONTENTS = ['velocities', 'light curve', 'mid-times'] as const;
-export type TableContent = (typeof TABLE_CONTENTS)[number];
-
 /** What is common to tables of every content. */
 export interface TableHead {
   readonly path: string;

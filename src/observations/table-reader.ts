@@ -1,7 +1,7 @@
 /** From a file (or its text) to a `VelocityTable`: read, recognise, convert, check. */
 import { createHash } from 'node:crypto';
 import { InputDataError, type InputIssue } from '../errors.js';
-import { planColumns, type ColumnPlan } from './columns.js';
+import { planColumns, type VelocityColumns } from './columns.js';
 import { decideTime, decideVelocityUnits, type TimeReading, type VelocityUnits } from './column-units.js';
 import { IssueList } from './issues.js';
 import { readTextFile } from './read-text.js';
@@ -32,7 +32,7 @@ export function requestFor(path: string): TableRequest {
  */
 export async function readTable(request: TableRequest): Promise<VelocityTable> {
   const { text, sha256 } = await readTextFile(request.path, LARGEST_TABLE_BYTES);
-  return parse(text, request.path, request, sha256);
+  return parseHashedTable(text, request.path, request, sha256);
 }
 
 /** Reads several tables; the problems of all of them come in one InputDataError. */
@@ -58,10 +58,16 @@ export async function readTables(requests: readonly TableRequest[]): Promise<Vel
  * @throws InputDataError with all problems of the text
  */
 export function parseTable(text: string, path: string, request: TableRequest): VelocityTable {
-  return parse(text, path, request, createHash('sha256').update(text, 'utf8').digest('hex'));
+  return parseHashedTable(text, path, request, createHash('sha256').update(text, 'utf8').digest('hex'));
 }
 
-function parse(text: string, path: string, request: TableRequest, sha256: string): VelocityTable {
+/** `parseTable` for a text whose checksum is known. */
+export function parseHashedTable(
+  text: string,
+  path: string,
+  request: TableRequest,
+  sha256: string,
+): VelocityTable {
   const issues = new IssueList(path);
   const notices: TableNotice[] = [];
   const table = readTableText(text, issues);
@@ -83,7 +89,7 @@ function parse(text: string, path: string, request: TableRequest, sha256: string
   const used = { timesBjdTdb, velocitiesMps, sigmasMps, instrumentOf, instruments, lines: rows.lines };
   notices.push(...suspiciousRows(used));
   return {
-    path, sha256, rows: table.rows.length, used: rows.lines.length, delimiter: table.format.delimiter,
+    content: 'velocities', path, sha256, rows: table.rows.length, used: rows.lines.length, delimiter: table.format.delimiter,
     columns: describeColumns(table, plan, units, time),
     timeScale: time.scale, timeOffsetDays: time.offsetDays, velocityUnit: units.velocity,
     ...used, kept: keptColumns(table, plan, rows), notices,
@@ -123,7 +129,7 @@ function checkSizes(
 
 function instrumentsOf(
   rows: NumberRows,
-  plan: ColumnPlan,
+  plan: VelocityColumns,
   path: string,
   request: TableRequest,
   issues: IssueList,
@@ -177,7 +183,7 @@ function hintAtKilometres(units: VelocityUnits, rows: NumberRows, notices: Table
 
 function describeColumns(
   table: TextTable,
-  plan: ColumnPlan,
+  plan: VelocityColumns,
   units: VelocityUnits,
   time: TimeReading,
 ): ColumnReading[] {
@@ -203,7 +209,11 @@ function describeColumns(
   });
 }
 
-function keptColumns(table: TextTable, plan: ColumnPlan, rows: NumberRows): Map<string, readonly string[]> {
+function keptColumns(
+  table: TextTable,
+  plan: VelocityColumns,
+  rows: NumberRows,
+): Map<string, readonly string[]> {
   const taken = new Set(plan.of.values());
   const kept = new Map<string, readonly string[]>();
   for (let index = 0; index < table.width; index++) {

@@ -1,5 +1,5 @@
 /** Turns rows of cells into numbers; every cell that is not what its column needs becomes an issue with its place. */
-import type { ColumnPlan } from './columns.js';
+import type { VelocityColumns } from './columns.js';
 import type { IssueList } from './issues.js';
 import { readCell } from './numbers.js';
 import { plainWord } from './suggest.js';
@@ -28,7 +28,7 @@ const MESSAGES = {
 
 export function readRows(
   table: TextTable,
-  plan: ColumnPlan,
+  plan: VelocityColumns,
   issues: IssueList,
   notices: TableNotice[],
 ): NumberRows {
@@ -155,7 +155,7 @@ function isFlagged(
   line: number,
   index: number,
   table: TextTable,
-  plan: ColumnPlan,
+  plan: VelocityColumns,
   issues: IssueList,
 ): boolean {
   const read = readCell(cell);

@@ -15,6 +15,8 @@ export interface TextTable {
   /** Number of cells of a row. */
   readonly width: number;
   readonly rows: readonly RawRow[];
+  /** Line of the first row of data, header and units behind it. */
+  readonly firstLine: number;
   readonly comments: readonly DataLine[];
   /** Place in its line (from 1) of a cell. */
   columnOf(line: number, cell: number): number;
@@ -115,7 +117,7 @@ function arrange(
   }
   const width = labels?.length ?? usual;
   const table: TextTable = {
-    format, labels, labelsFrom, unitRow, width, comments,
+    format, labels, labelsFrom, unitRow, width, comments, firstLine: rows[0]!.line,
     rows: evenRows(rows, width, labels !== null, issues),
     columnOf: (line, cell) => format.columnOf(lines[line - 1] ?? '', cell),
   }; // prettier-ignore
@@ -145,10 +147,11 @@ function afterHeader(all: readonly RawRow[], from: number): { unitRow: readonly 
   return { unitRow, start };
 }
 
+const UNIT_CELL = /^[[(]?(d(ays?)?|m?mag|ppm|e-\/s|adu)[\])]?$/i;
+
 function isUnitRow(cells: readonly string[]): boolean {
   return (
-    !cells.some(isNumberLike) &&
-    cells.some((cell) => velocityUnit(cell) !== null || /^[[(]?d(ays?)?[\])]?$/i.test(cell))
+    !cells.some(isNumberLike) && cells.some((cell) => velocityUnit(cell) !== null || UNIT_CELL.test(cell))
   );
 }
 

@@ -3,6 +3,8 @@
  * Plain immutable values; nothing here knows files or the console.
  */
 
+import type { MockPhotometry, MockTransit } from './mock-types.js';
+
 declare const unit: unique symbol;
 type Branded<U extends string> = number & { readonly [unit]: U };
 
@@ -36,8 +38,11 @@ export interface ColumnReading {
   readonly position: number;
   /** Label as written in the header, `null` in a headerless table. Untrusted text. */
   readonly label: string | null;
-  readonly meaning: 'time' | 'velocity' | 'velocity-error' | 'instrument' | 'quality' | 'kept';
-  /** e.g. `BJD_TDB - 2450000 (d)`, `km/s`, `m/s`; empty where there is none. */
+  readonly meaning:
+    | 'time' | 'velocity' | 'velocity-error' | 'instrument' | 'quality' | 'kept'
+    | 'flux' | 'magnitude' | 'error' | 'exposure' | 'band' | 'regressor'
+    | 'cycle' | 'source' | 'kind'; // prettier-ignore
+  /** e.g. `BJD_TDB - 2450000 (d)`, `km/s`, `m/s`, `mag`, `min`; empty where there is none. */
   readonly unit: string;
   /** How it is known: `header name`, `header unit`, `--columns`, `position (headerless table)`, `magnitude`. */
   readonly known: string;
@@ -45,6 +50,7 @@ export interface ColumnReading {
 
 /** A table of velocities as understood. Arrays hold the used rows only, in file order, all of one length. */
 export interface VelocityTable {
+  readonly content: 'velocities';
   readonly path: string;
   readonly sha256: string;
   /** Data rows in the file (flagged ones included). */
@@ -180,10 +186,14 @@ export interface MockPlan {
   readonly companions: readonly {
     readonly periodDays: number; readonly eccentricity: number; readonly argPeriastronStarDeg: number;
     readonly timePeriastronBjdTdb: number; readonly semiAmplitudeMps: number;
+    /** Absent: no transits. */
+    readonly transit?: MockTransit;
   }[]; // prettier-ignore
   readonly slopeMpsPerYear: number;
   readonly curvatureMpsPerYear2: number;
   readonly epochBjdTdb: number;
+  /** Light curves and mid-times; absent where there are none. */
+  readonly photometry?: MockPhotometry;
 }
 
 /** A case file, validated; or the same made from command-line options and bare tables. */
@@ -204,6 +214,8 @@ export interface Case {
   /** `auto`: as many as the data pay for; a number: exactly that many; a list: these, searched or started as described. */
   readonly companions: 'auto' | number | readonly CompanionChoice[];
   readonly maximumCompanions: number;
+  /** After the listed companions others are searched for; absent, the list is complete. Set by the solver, not by a case. */
+  readonly searchFurther?: boolean;
   readonly drift: DriftChoice;
   readonly circular: boolean | 'auto';
   readonly instruments: Readonly<Record<string, InstrumentChoice>>;
@@ -214,7 +226,25 @@ export interface Case {
   readonly mock: MockPlan | null;
 }
 
-/** One table to read, with what the user declared about it. */
+/** What a column may be declared to be. `error` is that of the flux, the magnitude or the mid-time (or of the velocity). */
+export const COLUMN_MEANINGS = [
+  'time', 'velocity', 'velocity-error', 'instrument', 'quality',
+  'flux', 'magnitude', 'error', 'exposure', 'band', 'cycle', 'source', 'kind',
+] as const; // prettier-ignore
+export type ColumnMeaning = (typeof COLUMN_MEANINGS)[number];
+
+/** Units that may be declared for the numbers of a light curve. `ppm` are deviations from the usual flux. */
+export const FLUX_UNITS = ['relative', 'counts', 'mag', 'ppm'] as const;
+/** Units that may be declared for an error column; of a light curve the first ones, of mid-times the last ones. */
+export const ERROR_UNITS = ['relative', 'counts', 'percent', 'ppm', 'mag', 'mmag', 'd', 'h', 'min', 's'] as const; // prettier-ignore
+export type FluxUnit = (typeof FLUX_UNITS)[number];
+export type ErrorUnit = (typeof ERROR_UNITS)[number];
+
+/** What a table holds. */
+export const TABLE_CONTENTS = ['velocities', 'light curve', 'mid-times'] as const;
+export type TableContent = (typeof TABLE_CONTENTS)[number];
+
+/** One table to read, with what the user declared about it; what is absent or `null` is recognised. */
 export interface TableRequest {
   readonly path: string;
   readonly instrument: string | null;
@@ -222,7 +252,34 @@ export interface TableRequest {
   readonly timeOffsetDays: number | null;
   readonly velocityUnit: 'm/s' | 'km/s' | null;
   /** Column labels or 1-based positions, e.g. `{ time: 'BJD', velocity: '2' }`. */
-  readonly columns: Partial<
-    Readonly<Record<'time' | 'velocity' | 'velocity-error' | 'instrument' | 'quality', string>>
-  >;
+  readonly columns: Partial<Readonly<Record<ColumnMeaning, string>>>;
+  /** What the table holds. */
+  readonly holds?: TableContent | null;
+  readonly errorUnit?: ErrorUnit | null;
+  /** Only for a light curve; a table that holds anything else says in a notice that it is not used. */
+  readonly lightCurve?: LightCurveChoice;
+  /** Only for mid-times; likewise. */
+  readonly midTimes?: MidTimeChoice;
+}
+
+/** What a case (or an option) states of a light curve. */
+export interface LightCurveChoice {
+  readonly fluxUnit?: FluxUnit | null;
+  readonly exposureDays?: number | null;
+  readonly band?: string | null;
+  /** Light of other stars in the aperture over all light. */
+  readonly dilution?: Measured | null;
+  /** Labels of columns, `time`, `time^2`, `time^3`. */
+  readonly baseline?: readonly string[] | 'auto' | null;
+  /** In units of the relative flux. */
+  readonly jitter?: ElementChoice | null;
+  readonly noise?: 'white' | 'correlated' | null;
+}
+
+/** What a case states of a table of mid-times. */
+export interface MidTimeChoice {
+  /** Letter of the companion. */
+  readonly companion?: string | null;
+  /** What all rows are, where no column says. */
+  readonly kind?: 'transit' | 'occultation' | null;
 }

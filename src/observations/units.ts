@@ -2,12 +2,12 @@
  * Units at the file edge: the only place where a written unit becomes a factor. Inside, times are days, velocities m/s,
  * angles degrees, star mass and radius solar (nominal, IAU 2015 Resolution B3), temperatures kelvin.
  */
-import { DAYS_PER_YEAR } from '../orbit/constants.js';
+import { DAYS_PER_YEAR, SECONDS_PER_DAY } from '../orbit/constants.js';
 
 /** What a number in a case or on the command line stands for. */
 export type QuantityKind =
   | 'star mass' | 'star radius' | 'temperature' | 'period' | 'date' | 'velocity' | 'angle' | 'height'
-  | 'number' | 'velocity per year' | 'velocity per year squared'; // prettier-ignore
+  | 'number' | 'velocity per year' | 'velocity per year squared' | 'duration' | 'relative flux' | 'density'; // prettier-ignore
 
 interface UnitList {
   /** The unit used inside, and assumed when none is written. */
@@ -19,6 +19,8 @@ interface UnitList {
 const HOURS_PER_DAY = 24;
 const MINUTES_PER_DAY = 1440;
 const DEGREES_PER_RADIAN = 180 / Math.PI;
+/** sigma_F = 0.921 F sigma_m: the derivative of F = 10^(-0.4 m). */
+export const FLUX_PER_MAGNITUDE: number = 0.4 * Math.LN10;
 
 const UNITS: Readonly<Record<QuantityKind, UnitList>> = {
   'star mass': { canonical: 'M_sun', factors: { msun: 1, 'm☉': 1, 'm⊙': 1, solarmass: 1, solarmasses: 1 } },
@@ -48,8 +50,26 @@ const UNITS: Readonly<Record<QuantityKind, UnitList>> = {
       radians: DEGREES_PER_RADIAN,
     },
   },
+  duration: {
+    canonical: 'd',
+    factors: {
+      d: 1, day: 1, days: 1, h: 1 / HOURS_PER_DAY, hr: 1 / HOURS_PER_DAY, hour: 1 / HOURS_PER_DAY, hours: 1 / HOURS_PER_DAY,
+      min: 1 / MINUTES_PER_DAY, minute: 1 / MINUTES_PER_DAY, minutes: 1 / MINUTES_PER_DAY,
+      s: 1 / SECONDS_PER_DAY, sec: 1 / SECONDS_PER_DAY, second: 1 / SECONDS_PER_DAY, seconds: 1 / SECONDS_PER_DAY,
+    }, // prettier-ignore
+  },
+  'relative flux': {
+    canonical: '',
+    factors: {
+      ppm: 1e-6, ppt: 1e-3, '%': 1e-2, percent: 1e-2, mag: FLUX_PER_MAGNITUDE, mmag: 0.001 * FLUX_PER_MAGNITUDE,
+    }, // prettier-ignore
+  },
   height: { canonical: 'm', factors: { m: 1, km: 1000 } },
   number: { canonical: '', factors: {} },
+  density: {
+    canonical: 'g/cm3',
+    factors: { 'g/cm3': 1, 'gcm-3': 1, 'g/cc': 1, 'kg/m3': 0.001, 'kgm-3': 0.001 },
+  },
   'velocity per year': {
     canonical: 'm/s/yr',
     factors: {
@@ -102,7 +122,7 @@ export function canonicalUnit(kind: QuantityKind): string {
 export function allowedUnits(kind: QuantityKind): string {
   const shown: Readonly<Partial<Record<QuantityKind, string>>> = {
     period: 'd, h, min, yr', date: 'd (a full Julian date, BJD_TDB)', velocity: 'm/s, km/s', angle: 'deg, rad', height: 'm, km',
-    number: 'no unit', 'velocity per year': 'm/s/yr, m/s/d', 'velocity per year squared': 'm/s/yr^2, m/s/d^2',
+    duration: 'd, h, min, s', 'relative flux': 'none (a fraction), ppm, ppt, %, mmag', density: 'g/cm3, kg/m3', number: 'no unit', 'velocity per year': 'm/s/yr, m/s/d', 'velocity per year squared': 'm/s/yr^2, m/s/d^2',
   }; // prettier-ignore
   return shown[kind] ?? UNITS[kind].canonical;
 }

@@ -86,3 +86,36 @@ export {
   transitProbability,
 } from './environment.js';
 export type { Irradiated, Neighbour, TransitGeometry } from './environment.js';
+
+export {
+  fullDurationDays,
+  inclinationFromImpactParameterRad,
+  occultationDistance,
+  occultationImpactParameter,
+  occultationPhase,
+  totalDurationDays,
+  transitDistance,
+  transitImpactParameter,
+} from './transit-geometry.js';
+export type { ScaledOrbit, TiltedOrbit } from './transit-geometry.js';
+export { occultationContacts, transitContacts } from './contact-times.js';
+export type { ContactTimes, CrossingOrbit } from './contact-times.js';
+export {
+  meanDensityGramsPerCm3,
+  scaledSemiMajorAxisFromDensity,
+  starDensityGramsPerCm3,
+} from './star-density.js';
+export { solveTransitShape, surfaceGravityMps2 } from './transit-shape.js';
+export type { MeasuredShape, ShapeSolution } from './transit-shape.js';
+export {
+  isPhysicalLimbDarkening,
+  limbDarkeningFromTriangle,
+  triangleFromLimbDarkening,
+} from './limb-darkening.js';
+export type { QuadraticLimbDarkening, TriangleSample } from './limb-darkening.js';
+export {
+  apparentPeriodChange,
+  occultationLightDelayDays,
+  starRadiusLightDays,
+  starRoemerAmplitudeDays,
+} from './light-time.js';

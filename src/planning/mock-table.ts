@@ -8,6 +8,13 @@ export interface MockRow {
   readonly airmass: number;
 }
 
+/** Where a table comes from, for its comment lines. */
+export interface TableOrigin {
+  readonly seed: number;
+  /** Name of the case, `null` when unknown; control characters are replaced by blanks. */
+  readonly title: string | null;
+}
+
 const MPS_PER_KMPS = 1000;
 
 /** Decimals of a velocity in m/s: at least two, and enough for three digits of the typical error. */
@@ -16,40 +23,59 @@ export function decimalsFor(errorMps: number): number {
 }
 
 /**
- * Writes a table. Lines end in `\n`, the last one as well; velocities are in the instrument's unit.
+ * Puts a table together. Lines end in `\n`, the last one as well.
  *
- * @param about.title - name of the case, `null` when unknown; control characters are replaced by blanks
- * @param about.timeDecimals - decimals of a day
+ * @param subject - what this table is, in words; untrusted labels in it cannot break out of their line
+ * @param remarks - further comment lines
  */
-export function mockTableText(
-  instrument: MockInstrument,
-  rows: readonly MockRow[],
-  about: { readonly seed: number; readonly title: string | null; readonly timeDecimals: number },
+export function tableText(
+  subject: readonly string[],
+  about: TableOrigin,
+  remarks: readonly string[],
+  header: readonly string[],
+  rows: readonly (readonly string[])[],
 ): string {
-  const { unit } = instrument;
-  const perUnit = unit === 'km/s' ? MPS_PER_KMPS : 1;
-  const decimals = decimalsFor(instrument.errorMps) + (unit === 'km/s' ? 3 : 0);
-  const velocity = (valueMps: number): string => (valueMps / perUnit).toFixed(decimals);
   const origin = [
     ...(about.title === null ? [] : [`case ${oneLine(about.title)}`]),
-    `instrument ${oneLine(instrument.name)}`,
+    ...subject.map(oneLine),
     `seed ${about.seed}`,
   ];
   const lines = [
     '# Simulated observations, made by tugline mock: no telescope was involved.',
     `# ${origin.join(', ')}`,
-    '# Times are mid-exposure, BJD_TDB in days; velocities are positive when the star recedes.',
-    `BJD_TDB,RV (${unit}),RV error (${unit}),airmass`,
-    ...rows.map((row) =>
-      [
-        row.timeBjdTdb.toFixed(about.timeDecimals),
-        velocity(row.velocityMps),
-        velocity(row.errorMps),
-        row.airmass.toFixed(3),
-      ].join(','),
-    ),
+    ...remarks.map((remark) => `# ${remark}`),
+    header.join(','),
+    ...rows.map((row) => row.join(',')),
   ];
   return `${lines.join('\n')}\n`;
+}
+
+/**
+ * Writes a table of velocities, in the instrument's unit.
+ *
+ * @param about.timeDecimals - decimals of a day
+ */
+export function mockTableText(
+  instrument: MockInstrument,
+  rows: readonly MockRow[],
+  about: TableOrigin & { readonly timeDecimals: number },
+): string {
+  const { unit } = instrument;
+  const perUnit = unit === 'km/s' ? MPS_PER_KMPS : 1;
+  const decimals = decimalsFor(instrument.errorMps) + (unit === 'km/s' ? 3 : 0);
+  const velocity = (valueMps: number): string => (valueMps / perUnit).toFixed(decimals);
+  return tableText(
+    [`instrument ${instrument.name}`],
+    about,
+    ['Times are mid-exposure, BJD_TDB in days; velocities are positive when the star recedes.'],
+    ['BJD_TDB', `RV (${unit})`, `RV error (${unit})`, 'airmass'],
+    rows.map((row) => [
+      row.timeBjdTdb.toFixed(about.timeDecimals),
+      velocity(row.velocityMps),
+      velocity(row.errorMps),
+      row.airmass.toFixed(3),
+    ]),
+  );
 }
 
 /** A label that cannot break out of its comment line. */

@@ -4,12 +4,13 @@
  */
 import { ModelDomainError, UsageError } from '../errors.js';
 import { RandomStream } from '../numerics/random.js';
-import type { MockInstrument, MockPlan } from '../observations/types.js';
+import type { MockInstrument, MockPlan, TableContent } from '../observations/types.js';
 import { DAYS_PER_YEAR } from '../orbit/constants.js';
 import { evaluateVelocity } from '../signals/evaluate-velocity.js';
 import type { VelocityModelPoint } from '../signals/velocity-model.js';
+import { simulatePhotometry } from './mock-photometry.js';
 import { decimalsFor, mockTableText } from './mock-table.js';
-import type { MockRow } from './mock-table.js';
+import type { MockRow, TableOrigin } from './mock-table.js';
 import { observableWindows } from './observing-nights.js';
 import type { ObservableNight, ObservableWindow } from './observing-nights.js';
 import { airmass, altitudeDeg, precessFromJ2000 } from './sky.js';
@@ -19,6 +20,7 @@ import { clearNights } from './weather.js';
 export interface MockTable {
   /** A plain file name, without a folder. */
   readonly fileName: string;
+  readonly holds: TableContent;
   readonly text: string;
   /** Number of observations in it. */
   readonly rows: number;
@@ -39,19 +41,33 @@ const TIME_DECIMALS = 5;
  * standard deviation of their logarithm; the noise is Gaussian with variance formal error² + jitter².
  * An observation is simulated at the time and with the error that are printed; rounding moves a velocity by at most 0.5 % of `errorMps`.
  *
+ * Light curves have even cadence, mid-times are distinct transits; see `mock-survey.ts`, `mock-night.ts`, `mock-mid-times.ts`.
+ *
  * @param seed - the same seed gives the same bytes. Each instrument has a random stream of its own, by its place in the list:
  *   changing one instrument's errors or velocities leaves the others as they were
  * @param title - name of the case (the base name of its file), for the comment lines of the tables
- * @returns one table per instrument, in the plan's order; rows in order of time
- * @throws UsageError when an instrument has fewer usable nights than observations, or a table's file name is unusable
+ * @returns one table per instrument, per light curve and per list of mid-times, in the plan's order; rows in order of time
+ * @throws UsageError when there are fewer usable nights or transits than observations, or a table's file name is unusable
  * @throws ModelDomainError when a count is not a whole number >= 1, dates are in the wrong order, or an error or jitter is out of range
  */
 export function simulateObservations(plan: MockPlan, seed: number, title?: string): MockTable[] {
-  if (plan.instruments.length === 0)
+  const { photometry } = plan;
+  const count =
+    plan.instruments.length + (photometry?.lightCurves.length ?? 0) + (photometry?.midTimes.length ?? 0);
+  if (count === 0)
     throw new UsageError('the plan has no instrument to observe with', {
       hint: 'list at least one instrument',
     });
   checkFileNames(plan);
+  const about = { seed, title: title ?? null };
+  const velocities = plan.instruments.length === 0 ? [] : simulateVelocities(plan, about);
+  return photometry === undefined
+    ? velocities
+    : [...velocities, ...simulatePhotometry(plan, photometry, about)];
+}
+
+function simulateVelocities(plan: MockPlan, about: TableOrigin): MockTable[] {
+  const { seed } = about;
   plan.instruments.forEach(checkInstrument);
   const nightsOf = plan.instruments.map(({ from, to }) => observableWindows(plan, from, to));
   const night = (days: number): number => Math.floor(days + plan.site.longitudeEastDeg / 360);
@@ -69,7 +85,8 @@ export function simulateObservations(plan: MockPlan, seed: number, title?: strin
     const rows = observe(plan, instrument, truth, nights, random);
     return {
       fileName: instrument.table,
-      text: mockTableText(instrument, rows, { seed, title: title ?? null, timeDecimals: TIME_DECIMALS }),
+      holds: 'velocities' as const,
+      text: mockTableText(instrument, rows, { ...about, timeDecimals: TIME_DECIMALS }),
       rows: rows.length,
     };
   });
@@ -177,18 +194,25 @@ function checkInstrument(instrument: MockInstrument): void {
   if (!(jitterMps >= 0 && jitterMps < Infinity)) refuse('jitter', jitterMps, '[0, infinity) m/s');
 }
 
-function checkFileNames({ instruments }: MockPlan): void {
-  const seen = new Set<string>();
-  for (const { name, table } of instruments) {
+function checkFileNames({ instruments, photometry }: MockPlan): void {
+  const seen = new Map<string, string>();
+  const wanted = [
+    ...instruments.map(({ name, table }) => ({ who: `instrument ${name}`, table })),
+    ...(photometry?.lightCurves ?? []).map(({ table }, i) => ({ who: `light curve ${i + 1}`, table })),
+    ...(photometry?.midTimes ?? []).map(({ table }, i) => ({ who: `mid-times ${i + 1}`, table })),
+  ];
+  for (const { who, table } of wanted) {
     if (!/^[^/\\\p{Cc}]+$/u.test(table) || /^\.+$/.test(table))
-      throw new UsageError(`instrument ${name}: "${table}" cannot be the file name of a table`, {
+      throw new UsageError(`${who}: "${table}" cannot be the file name of a table`, {
         allowed: 'a plain file name such as north.csv; the folder is chosen with --out',
       });
     // some file systems do not tell North.csv from north.csv
-    if (seen.has(table.toLowerCase()))
-      throw new UsageError(`instrument ${name}: another instrument already writes the table "${table}"`, {
-        hint: 'give each instrument a table of its own',
-      });
-    seen.add(table.toLowerCase());
+    const other = seen.get(table.toLowerCase());
+    if (other !== undefined)
+      throw new UsageError(
+        `${who}: ${other.startsWith('instrument') ? 'another instrument' : other} already writes the table "${table}"`,
+        { hint: 'give each instrument a table of its own' },
+      );
+    seen.set(table.toLowerCase(), who);
   }
 }

@@ -28,12 +28,19 @@ export function companionRecord(
   options: EvidenceOptions,
 ): CompanionRecord {
   const keys = Object.keys(ELEMENT_UNITS) as ElementKey[];
-  const epoch = explorer.builder.epochBjdTdb;
+  const { epochBjdTdb: epoch, data } = explorer.builder;
+  const { timesDays } = data;
   const elements = Object.fromEntries(keys.map((key) => [key, elementQuantity(sampled, index, key, epoch)]));
   return {
     letter,
     elements: elements as Record<ElementKey, Quantity>,
-    derived: derivedQuantities(explorer, sampled, index, best.plan.companions[index]!.choice, options.seed),
+    derived: derivedQuantities(
+      { epochBjdTdb: epoch, lastObservationDays: timesDays[timesDays.length - 1]! },
+      sampled,
+      index,
+      best.plan.companions[index]!.choice,
+      options.seed,
+    ),
     circular: best.plan.companions[index]!.circular,
     evidence: evidenceOf(explorer, best, index, options),
     rivals: rivalSearch.rivals,
@@ -41,29 +48,28 @@ export function companionRecord(
   };
 }
 
-function derivedQuantities(
-  explorer: Explorer,
+export function derivedQuantities(
+  when: { readonly epochBjdTdb: number; readonly lastObservationDays: number },
   sampled: Sampled,
   index: number,
   choice: CompanionChoice | null,
   seed: number,
 ): Record<DerivedKey, Quantity> {
-  const { timesDays } = explorer.builder.data;
-  const lastObservationDays = timesDays[timesDays.length - 1]!;
+  const { epochBjdTdb, lastObservationDays } = when;
   const inclination = choice?.inclinationDeg ?? null;
   const random = RandomStream.fromSeed(seed, 200 + index);
-  const withInclination = (star: StarDraw, sigma: number): StarDraw => ({
-    ...star,
-    inclinationDeg: inclination === null ? null : inclination.value + sigma * inclination.sigma,
-  });
-  const star = withInclination(sampled.star, 0);
+  const seen = sampled.inclinationsDeg?.[index] ?? null;
+  const stated = (sigma: number): number | null =>
+    inclination === null ? null : inclination.value + sigma * inclination.sigma;
+  const star: StarDraw = { ...sampled.star, inclinationDeg: seen?.best ?? stated(0) };
   const best = deriveAll(
     { elements: sampled.values.companions[index]!, star, lastObservationDays },
     DERIVED_KEYS,
   );
   const columns = DERIVED_KEYS.map(() => new Float64Array(sampled.draws.length));
   sampled.draws.forEach((draw, d) => {
-    const drawnStar = withInclination(sampled.stars[d]!, inclination === null ? 0 : random.normal());
+    const inclinationDeg = seen?.draws[d] ?? stated(inclination === null ? 0 : random.normal());
+    const drawnStar: StarDraw = { ...sampled.stars[d]!, inclinationDeg };
     const values = deriveAll(
       { elements: draw.companions[index]!, star: drawnStar, lastObservationDays },
       DERIVED_KEYS,
@@ -74,7 +80,7 @@ function derivedQuantities(
   const entries = DERIVED_KEYS.map((key, k): [DerivedKey, Quantity] => {
     const lack = derivedLack(key, star);
     if (lack !== null) return [key, unknownQuantity(derivedUnit(key), lack)];
-    const shift = isDerivedTime(key) ? explorer.builder.epochBjdTdb : 0;
+    const shift = isDerivedTime(key) ? epochBjdTdb : 0;
     // Dates of one and the same passage: a draw that lands on the passage before or after is brought back.
     const column = isDerivedTime(key)
       ? columns[k]!.map((t) => t - period * Math.round((t - best[k]!) / period))

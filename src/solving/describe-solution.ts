@@ -19,6 +19,7 @@ import type {
   CandidateRecord,
   CompanionRecord,
   InstrumentRecord,
+  PosteriorRecord,
   Quantity,
   SolutionRecord,
   Solved,
@@ -114,7 +115,9 @@ export function describeSolution(
 }
 
 /** A posterior that did not converge is no basis for intervals. */
-function samplingWarnings(posterior: PosteriorSample | null): SolutionRecord['warnings'] {
+export function samplingWarnings(
+  posterior: { readonly record: PosteriorRecord } | null,
+): SolutionRecord['warnings'] {
   if (posterior === null || posterior.record.status === 'converged') return [];
   const { rHatMax, bulkEssMin, tailEssMin, status } = posterior.record;
   const why = status === 'interrupted' ? 'was interrupted' : 'reached its limit of draws';
@@ -144,7 +147,7 @@ function lettersOf(theCase: Case, best: PlannedFit): string[] {
   return best.plan.companions.map((_, c) => listed[c]?.letter ?? String.fromCharCode('b'.charCodeAt(0) + c));
 }
 
-function starQuantity(measured: Measured | null, unit: string): Quantity {
+export function starQuantity(measured: Measured | null, unit: string): Quantity {
   if (measured === null) return unknownQuantity(unit, 'not given');
   const { value, sigma } = measured;
   return sigma > 0

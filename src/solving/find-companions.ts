@@ -39,7 +39,7 @@ export interface Found {
 /** Number of fitted companions when the case names it; `null` leaves it to the evidence. */
 function wantedCount(explorer: Explorer): number | null {
   const { companions } = explorer.theCase;
-  if (companions === 'auto') return null;
+  if (companions === 'auto' || explorer.theCase.searchFurther === true) return null;
   return typeof companions === 'number' ? companions : companions.length;
 }
 
@@ -74,7 +74,7 @@ export function findCompanions(explorer: Explorer, onStage: (done: number) => vo
     });
     onStage(count + 1);
     if (addition === null) break;
-    if (wanted === null && !clears(addition, ACCEPTED)) {
+    if (wanted === null && choice === null && !clears(addition, ACCEPTED)) {
       if (clears(addition, CANDIDATE)) candidate = addition;
       break;
     }

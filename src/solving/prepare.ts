@@ -9,12 +9,17 @@ export interface Prepared {
   readonly spanDays: number;
 }
 
-/** The epoch is the middle of the observations rounded to half a day, so that it can be quoted exactly. */
+/** The middle of the observations rounded to half a day, so that it can be quoted exactly. */
+export function epochOf(velocities: VelocitySet): number {
+  const times = velocities.timesBjdTdb;
+  return Math.round(times[0]! + times[times.length - 1]!) / 2;
+}
+
 export function explorerFor(theCase: Case, velocities: VelocitySet): Prepared {
   const times = velocities.timesBjdTdb;
   const first = times[0]!;
   const last = times[times.length - 1]!;
-  const epochBjdTdb = Math.round(first + last) / 2;
+  const epochBjdTdb = epochOf(velocities);
   const data: VelocityData = {
     timesDays: times.map((t) => t - epochBjdTdb),
     velocitiesMps: velocities.velocitiesMps,

@@ -1,5 +1,5 @@
 /** What a solution with transits adds to the record and to what charts and tables need. */
-import type { Quantity } from './types.js';
+import type { Quantity } from './quantity.js';
 
 /** Elements that only a light curve gives. Keys of `companions[].elements`, present for transiting companions only. */
 export const TRANSIT_ELEMENT_UNITS = {
@@ -32,7 +32,9 @@ export interface LightCurveRecord {
   /** Points in the fit (neighbourhood of transits), of so many used rows of the table. */
   readonly count: number;
   readonly rows: number;
-  readonly exposure: number; // d
+  /** Neighbouring rows per fitted point. */
+  readonly averaged: number;
+  readonly exposure: number; // d, of a fitted point
   readonly jitter: Quantity; // ppm
   readonly rms: number; // ppm, of the residuals
   readonly dilution: Quantity;
@@ -53,6 +55,20 @@ export interface BandRecord {
   readonly u2: Quantity;
   /** `triangular` (uniform over all physical pairs), or `stated` by the case. */
   readonly prior: 'triangular' | 'stated';
+  /** By letter, of companions whose occultations are fitted; ppm. */
+  readonly occultationDepths?: Readonly<Record<string, Quantity>>;
+}
+
+/** How a companion was found in the light curves. */
+export interface DetectionRecord {
+  readonly letter: string;
+  /** Where its ephemeris came from before the fit. */
+  readonly how: 'search' | 'mid-times' | 'case' | 'velocities' | 'one event';
+  readonly signalToNoise: number | null;
+  readonly efficiency: number | null;
+  readonly falseAlarmProbability: number | null;
+  /** Transits with data. */
+  readonly events: number;
 }
 
 /** One transit in one table, with its own mid-time (shape as in the solution). */
@@ -75,6 +91,13 @@ export interface MidTimeRecord {
 
 /** `photometry` of `solution.json`; present when light curves or mid-times were given. */
 export interface PhotometryRecord {
+  readonly detections: readonly DetectionRecord[];
+  /** Dips that were looked at and not taken, with the reason. */
+  readonly refused: readonly {
+    readonly period: number | null;
+    readonly depth: number /* ppm */;
+    readonly why: string;
+  }[];
   readonly lightCurves: readonly LightCurveRecord[];
   readonly bands: readonly BandRecord[];
   readonly events: readonly TransitEventRecord[];

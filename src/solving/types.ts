@@ -4,6 +4,7 @@
  */
 import type { TimeScale, VelocitySet } from '../observations/types.js';
 import type { VelocityModelPoint } from '../signals/velocity-model.js';
+import type { Quantity } from './quantity.js';
 import type {
   PhotometryRecord,
   SolvedPhotometry,
@@ -11,16 +12,7 @@ import type {
   TransitElementKey,
 } from './transit-types.js';
 
-/** A number with its uncertainty. `lower` and `upper` bound the central 68.3 %; an unknown is `null` with a `why`. */
-export interface Quantity {
-  readonly value: number | null;
-  readonly sigma: number | null;
-  readonly lower: number | null;
-  readonly upper: number | null;
-  readonly unit: string;
-  readonly fixed?: true;
-  readonly why?: string;
-}
+export type { Quantity } from './quantity.js';
 
 /** A period that explains the data nearly as well, refitted. `deltaLogLikelihood` is (rival - reported), usually <= 0. */
 export interface Rival {

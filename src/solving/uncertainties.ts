@@ -33,6 +33,8 @@ export interface Sampled {
   readonly star: StarDraw;
   readonly curvature: Curvature;
   readonly point: ModelPoint;
+  /** Per companion its inclination where transits tell it; absent or `null` where they do not. */
+  readonly inclinationsDeg?: readonly ({ readonly best: number; readonly draws: Float64Array } | null)[];
 }
 
 /** Passages nearest to the weighted mean time of the data, where they are least correlated with the period. */

@@ -30,6 +30,9 @@ const PEER = join(ROOT, 'test/bench/peers/periodogram.py');
 const ROUNDS = 5;
 const REPEATS = 9;
 const WANTED_RATIO = 3;
+/** With many points the spreading of points, which both do, outweighs the transforms. */
+const WANTED_RATIO_MANY = 2;
+const MANY_POINTS = 10_000;
 /** Ours promises 1e-11 of the sum of the amplitudes; powers of this data are ratios of such sums. */
 const EXACT_WITHIN = 1e-8;
 /** The peer's fast method approximates: differences of a few 1e-3 were seen. */
@@ -44,7 +47,8 @@ function interpreter(): string | null {
 }
 
 function inputFor(points: number, count: number): PeriodogramInput {
-  const spanDays = 2000;
+  // At most one velocity a night.
+  const spanDays = Math.max(2000, 2 * points);
   const velocities = simulatedVelocities(points, spanDays);
   return {
     timesDays: Array.from(velocities.timesBjdTdb, (time) => time - velocities.timesBjdTdb[0]!),
@@ -97,7 +101,7 @@ function compare(python: string, folder: string, points: number, count: number):
   const cold = (runs: typeof ours): number => median(runs.map((times) => times[0]!));
   return (
     `periodogram ${points} points x ${count} frequencies: ${warm(ours).toFixed(1)} ms, astropy ${check.version} ` +
-    `${warm(theirs).toFixed(1)} ms, ratio ${verdict(warm(theirs) / warm(ours), WANTED_RATIO, 'higher')}; first call ` +
+    `${warm(theirs).toFixed(1)} ms, ratio ${verdict(warm(theirs) / warm(ours), points < MANY_POINTS ? WANTED_RATIO : WANTED_RATIO_MANY, 'higher')}; first call ` +
     `${cold(ours).toFixed(1)} against ${cold(theirs).toFixed(1)} ms (${(cold(theirs) / cold(ours)).toFixed(2)}); ` +
     `largest difference of powers ${exact.toExponential(1)} from direct sums, ${fast.toExponential(1)} from its fast method`
   );
@@ -109,7 +113,7 @@ export function benchPeriodogram(): string[] {
   if (python === null) return ['periodogram: skipped, no Python interpreter with astropy was found'];
   const folder = mkdtempSync(join(tmpdir(), 'tugline-bench-'));
   try {
-    return [100, 1000].map((points) => compare(python, folder, points, 100_000));
+    return [100, 1000, 20_000].map((points) => compare(python, folder, points, 100_000));
   } finally {
     rmSync(folder, { recursive: true, force: true });
   }

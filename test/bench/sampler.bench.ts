@@ -11,7 +11,6 @@ import { bulkEss } from '../../src/numerics/sampling/diagnostics.js';
 import { NutsChain } from '../../src/numerics/sampling/nuts.js';
 import { densityOf, type DensityRecipe } from '../../src/solving/posterior/chain-job.js';
 import { curvatureOfDensity } from '../../src/solving/posterior/density-curvature.js';
-import { judgedNumbers } from '../../src/solving/posterior/sample-mode.js';
 import { scalesOf } from '../../src/solving/posterior/sample-posterior.js';
 import { settleCase } from '../../src/solving/settle.js';
 import { BARE_CASE } from '../challenge/evaluate.js';
@@ -58,9 +57,7 @@ function ours(
   });
   const seconds = (performance.now() - began) / 1000;
   const rows = chains.map((positions) =>
-    Array.from({ length: DRAWS }, (_, d) =>
-      judgedNumbers(density, positions.subarray(d * size, (d + 1) * size)),
-    ),
+    Array.from({ length: DRAWS }, (_, d) => density.judged(positions.subarray(d * size, (d + 1) * size))),
   );
   const columns = rows[0]![0]!.length;
   let smallest = Infinity;
@@ -83,6 +80,7 @@ export function benchSampler(): string[] {
   const { explorer, best } = settled;
   const scales = scalesOf(settled, BARE_CASE);
   const recipe: DensityRecipe = {
+    kind: 'velocities',
     data: explorer.builder.data,
     instruments: velocities.instruments,
     theCase: BARE_CASE,

@@ -1,8 +1,9 @@
 import { beforeAll, describe, expect, it } from 'vitest';
+import type { DrawnSet } from './draw-enough.js';
 import { judgeSet, type SetResult } from './judge-set.js';
 import { PROBLEMS } from './problems.js';
 import { quantitiesOf } from './quantities.js';
-import { sampleSet, type SampledSet } from './sample-set.js';
+import { sampleSet } from './sample-set.js';
 import { calibrationFaults, coverage, scatterOverBound, uniformityProbability } from './statistics.js';
 
 const SETS = 60;
@@ -15,7 +16,7 @@ const { names } = quantitiesOf(circular);
  * then uniform, whatever the model [Talts et al. 2018, arXiv:1804.06788].
  */
 describe(`calibration on ${SETS} simulated sets with a circular orbit`, () => {
-  let sampled: SampledSet[] = [];
+  let sampled: DrawnSet[] = [];
   let honest: SetResult[] = [];
   beforeAll(() => {
     sampled = Array.from({ length: SETS }, (_, index) => sampleSet(circular, index, SEED));

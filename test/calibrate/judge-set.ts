@@ -1,8 +1,6 @@
 /** Where the truth of a set lies among its draws, and how far the estimate is from the truth. */
 import { median } from '../../src/numerics/summary.js';
-import { circularBounds } from './circular-bounds.js';
-import { quantitiesOf } from './quantities.js';
-import { RANK_DRAWS, type SampledSet } from './sample-set.js';
+import { RANK_DRAWS, type DrawnSet } from './draw-enough.js';
 
 /** Plain data: it crosses processes as JSON. */
 export interface SetResult {
@@ -22,8 +20,8 @@ export interface SetResult {
 /**
  * @param widthFactor - draws are pulled towards their median by this factor; 1 except in negative controls
  */
-export function judgeSet(sampled: SampledSet, widthFactor = 1): SetResult {
-  const { problem, index, truths, columns, smallestEss, divergences } = sampled;
+export function judgeSet(sampled: DrawnSet, widthFactor = 1): SetResult {
+  const { name, index, truths, columns, standardised, smallestEss, divergences } = sampled;
   const draws = columns[0]!.length;
   const thinning = draws / RANK_DRAWS;
   // Pulling the draws towards their median by a factor is pushing the truth away from it by the inverse.
@@ -32,7 +30,7 @@ export function judgeSet(sampled: SampledSet, widthFactor = 1): SetResult {
     return middle + (truths[q]! - middle) / widthFactor;
   });
   return {
-    problem: problem.name,
+    problem: name,
     index,
     ranks: columns.map((column, q) => {
       let below = 0;
@@ -40,17 +38,9 @@ export function judgeSet(sampled: SampledSet, widthFactor = 1): SetResult {
       return below;
     }),
     levels: columns.map((column, q) => column.filter((value) => value < thresholds[q]!).length / draws),
-    standardised: problem.companions.every(({ circular }) => circular) ? standardisedErrors(sampled) : [],
+    standardised,
     smallestEss,
     divergences,
     draws,
   };
-}
-
-/** Errors of the estimate in the order of the quantities of a circular orbit, without the jitter. */
-function standardisedErrors({ problem, set, best, truths }: SampledSet): number[] {
-  const estimate = quantitiesOf(problem).read(best, set.truth);
-  const { logPeriod, amplitudeMps, longitudeRad, zeroPointMps } = circularBounds(set);
-  const bounds = [logPeriod, amplitudeMps, longitudeRad, zeroPointMps];
-  return bounds.map((bound, q) => (estimate[q]! - truths[q]!) / bound);
 }

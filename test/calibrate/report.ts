@@ -1,8 +1,7 @@
 /** The calibration in words and numbers: one Markdown table per problem. */
 import type { SetResult } from './judge-set.js';
-import type { CalibrationProblem } from './problems.js';
-import { quantitiesOf } from './quantities.js';
-import { ENOUGH_ESS } from './sample-set.js';
+import { ENOUGH_ESS } from './draw-enough.js';
+import type { Exercise } from './exercises.js';
 import {
   binomialError,
   coverage,
@@ -15,11 +14,10 @@ import {
 
 const percent = (share: number): string => (100 * share).toFixed(1);
 
-export function problemReport(problem: CalibrationProblem, results: readonly SetResult[]): string {
-  const { names } = quantitiesOf(problem);
+export function problemReport({ name: title, names }: Exercise, results: readonly SetResult[]): string {
   const hasBounds = results[0]!.standardised.length > 0;
-  const title = LEVELS.map((level) => `${percent(level)} % interval`);
-  const head = ['quantity', ...title, 'ranks: p of χ²', ...(hasBounds ? ['scatter / bound'] : [])];
+  const intervals = LEVELS.map((level) => `${percent(level)} % interval`);
+  const head = ['quantity', ...intervals, 'ranks: p of χ²', ...(hasBounds ? ['scatter / bound'] : [])];
   const rows = names.map((name, q) => [
     name,
     ...LEVELS.map((level) => percent(coverage(results, q, level))),
@@ -39,7 +37,7 @@ export function problemReport(problem: CalibrationProblem, results: readonly Set
   const short = results.filter(({ smallestEss }) => smallestEss < ENOUGH_ESS).length;
   const bound = hasBounds ? `, of a scatter ${percent(1 / Math.sqrt(2 * results.length))} %` : '';
   return [
-    `**${problem.name}**: ${results.length} sets; standard error of a coverage ${errors.join(' and ')} points${bound}; ` +
+    `**${title}**: ${results.length} sets; standard error of a coverage ${errors.join(' and ')} points${bound}; ` +
       `${percent(divergences / draws)} % of draws ended at the edge of the allowed orbits or diverged; ` +
       `${short} sets kept fewer than ${ENOUGH_ESS} effective draws.`,
     '',

@@ -1,6 +1,5 @@
-/** One simulated set, fitted and sampled as the program does it. */
+/** One simulated set of velocities, fitted and sampled as the program does it. */
 import { RandomStream } from '../../src/numerics/random.js';
-import { bulkEss } from '../../src/numerics/sampling/diagnostics.js';
 import { NutsChain } from '../../src/numerics/sampling/nuts.js';
 import { fitModel, THOROUGH } from '../../src/solving/fit-model.js';
 import { ModelBuilder, portableOf, type PortablePoint } from '../../src/solving/model-builder.js';
@@ -8,31 +7,13 @@ import { polish } from '../../src/solving/polish.js';
 import { curvatureOfDensity } from '../../src/solving/posterior/density-curvature.js';
 import { PosteriorDensity } from '../../src/solving/posterior/posterior-density.js';
 import { BARE_CASE } from '../solving/helpers.js';
+import { circularBounds } from './circular-bounds.js';
+import { drawEnough, type DrawnSet } from './draw-enough.js';
 import { planOf, simulate, windowsOf, type CalibrationProblem, type SimulatedSet } from './problems.js';
 import { quantitiesOf } from './quantities.js';
 import { windowedDensity } from './windowed-density.js';
 
-const WARMUP = 200;
-/** Draws kept for the ranks, evenly thinned: a rank is one of 200 numbers. */
-export const RANK_DRAWS = 199;
-const BATCH = 5 * RANK_DRAWS;
-/** As in the program, draws are added until they are worth enough independent ones; here as many as are kept. */
-export const ENOUGH_ESS = 200;
-const MOST_BATCHES = 10;
-
-export interface SampledSet {
-  readonly problem: CalibrationProblem;
-  readonly index: number;
-  readonly set: SimulatedSet;
-  /** Maximum of the likelihood next to the truth. */
-  readonly best: PortablePoint;
-  /** Per quantity, the truth. */
-  readonly truths: readonly number[];
-  /** Per quantity, the draws in order; a multiple of `RANK_DRAWS`. */
-  readonly columns: readonly Float64Array[];
-  readonly smallestEss: number;
-  readonly divergences: number;
-}
+export const WARMUP = 200;
 
 function maximum(builder: ModelBuilder, problem: CalibrationProblem, truth: PortablePoint): PortablePoint {
   const plan = planOf(problem);
@@ -43,7 +24,7 @@ function maximum(builder: ModelBuilder, problem: CalibrationProblem, truth: Port
 }
 
 /** The same problem, index and seed give the same draws. */
-export function sampleSet(problem: CalibrationProblem, index: number, seed: number): SampledSet {
+export function sampleSet(problem: CalibrationProblem, index: number, seed: number): DrawnSet {
   const set = simulate(problem, RandomStream.fromSeed(seed + index));
   const { truth, data } = set;
   const builder = new ModelBuilder(data, ['spectrograph'], BARE_CASE, 0);
@@ -62,19 +43,26 @@ export function sampleSet(problem: CalibrationProblem, index: number, seed: numb
   );
   const quantities = quantitiesOf(problem);
   const truths = quantities.read(truth, truth);
-  const growing = truths.map((): number[] => []);
-  let columns: Float64Array[] = [];
-  let smallestEss = 0;
-  let divergences = 0;
-  for (let batch = 0; batch < MOST_BATCHES && smallestEss < ENOUGH_ESS; batch++) {
-    const { positions, divergent } = chain.draw(BATCH);
-    for (let d = 0; d < BATCH; d++) {
-      const position = positions.subarray(d * density.size, (d + 1) * density.size);
-      quantities.read(density.portable(position), truth).forEach((value, q) => growing[q]!.push(value));
-      divergences += divergent[d]!;
-    }
-    columns = growing.map((values) => Float64Array.from(values));
-    smallestEss = Math.min(...columns.map((column) => bulkEss([column])));
-  }
-  return { problem, index, set, best, truths, columns, smallestEss, divergences };
+  const isCircular = problem.companions.every(({ circular }) => circular);
+  return {
+    name: problem.name,
+    index,
+    truths,
+    standardised: isCircular ? standardisedErrors(set, quantities.read(best, truth), truths) : [],
+    ...drawEnough(chain, density.size, (position) => quantities.read(density.portable(position), truth)),
+  };
+}
+
+/**
+ * Errors of the maximum-likelihood estimate over the bounds, in the order of the quantities of a circular orbit: ln P, K,
+ * mean longitude, zero point.
+ */
+function standardisedErrors(
+  set: SimulatedSet,
+  estimate: readonly number[],
+  truths: readonly number[],
+): number[] {
+  const { logPeriod, amplitudeMps, longitudeRad, zeroPointMps } = circularBounds(set);
+  const bounds = [logPeriod, amplitudeMps, longitudeRad, zeroPointMps];
+  return bounds.map((bound, q) => (estimate[q]! - truths[q]!) / bound);
 }

@@ -1,7 +1,7 @@
 /** What many judged sets say together: coverage, uniformity of ranks, scatter over the bound. */
 import { regularisedGammaQ } from '../../src/numerics/special-functions.js';
 import type { SetResult } from './judge-set.js';
-import { RANK_DRAWS } from './sample-set.js';
+import { RANK_DRAWS } from './draw-enough.js';
 
 /** Central intervals of one and two standard deviations of a Gaussian. */
 export const LEVELS: readonly number[] = [0.683, 0.954];

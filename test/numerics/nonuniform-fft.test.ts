@@ -70,6 +70,12 @@ describe('NonuniformTransform against sums taken term by term', () => {
     });
   }
 
+  it('many points, for which the frequencies stay in one block', () => {
+    const random = RandomStream.fromSeed(17);
+    const { x, a } = points(random, 6000, 500);
+    compare(0.0007, 1 / 10000, 30000, x, a);
+  });
+
   it('points far from the origin (40 000 d at frequencies up to 2/d)', () => {
     const random = RandomStream.fromSeed(12);
     const { x, a } = points(random, 100, 10);
@@ -103,6 +109,7 @@ describe('NonuniformTransform against sums taken term by term', () => {
     const plan = new NonuniformTransform(0.01, 0.003, 500);
     const first = points(random, 40, 100);
     const second = points(random, 90, 100);
+    const many = points(random, 6000, 100);
     const run = ({ x, a }: typeof first): Float64Array => {
       const re = new Float64Array(500);
       plan.transform(x, a, re, new Float64Array(500));
@@ -110,6 +117,7 @@ describe('NonuniformTransform against sums taken term by term', () => {
     };
     const before = run(first);
     run(second);
+    run(many);
     expect(run(first)).toEqual(before);
   });
 

@@ -46,7 +46,7 @@ export function withDraws(solved: Solved, request: DrawsRequest): Solved {
   };
   for (const { letter, elements, derived, circular } of solved.record.companions) {
     const key = (name: string): string => `companions.${letter}.elements.${name}`;
-    const centre = (name: keyof typeof elements): number => elements[name].value ?? 0;
+    const centre = (name: keyof typeof elements): number => elements[name]?.value ?? 0;
     const [p, t, k, h, s, m] = [series(), series(), series(), series(), series(), series()];
     add(key('period'), 'd', 0, (i) => centre('period') * (1 + 1e-4 * p[i]!));
     const e0 = centre('eccentricity');

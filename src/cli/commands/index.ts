@@ -4,5 +4,6 @@ import { check } from './check.js';
 import { mock } from './mock.js';
 import { periods } from './periods.js';
 import { solve } from './solve.js';
+import { timing } from './timing.js';
 
-export const COMMANDS: readonly Command[] = [check, periods, solve, mock];
+export const COMMANDS: readonly Command[] = [check, periods, solve, timing, mock];

@@ -2,6 +2,7 @@
 import { basename } from 'node:path';
 
 import { UsageError } from '../../errors.js';
+import type { MockTable } from '../../planning/mock.js';
 import type { CommandArguments } from '../command-arguments.js';
 import type { Command } from '../command.js';
 import { FORCE_OPTION, outOption, SEED_OPTION } from '../options.js';
@@ -35,21 +36,29 @@ async function run(given: CommandArguments, terminal: Terminal): Promise<number>
     terminal.print(
       stableJson({
         seed,
-        tables: tables.map((table, index) => ({ path: paths[index], rows: table.rows })),
+        tables: tables.map((table, index) => ({ path: paths[index], holds: table.holds, rows: table.rows })),
       }).trimEnd(),
     );
   else
     for (const [index, table] of tables.entries())
-      terminal.print(`${plainLabel(paths[index] ?? '')}: ${table.rows} simulated velocities (seed ${seed})`);
+      terminal.print(
+        `${plainLabel(paths[index] ?? '')}: ${table.rows} simulated ${ROWS_OF[table.holds]} (seed ${seed})`,
+      );
   return 0;
 }
+
+const ROWS_OF: Readonly<Record<MockTable['holds'], string>> = {
+  velocities: 'velocities',
+  'light curve': 'points of a light curve',
+  'mid-times': 'mid-times',
+};
 
 export const mock: Command = {
   name: 'mock',
   operands: 'CASE',
   summary: 'simulated observations of a case',
   description: [
-    'Simulates the tables that the instruments of a case would have brought home, had the orbits been those of its mock block: nights of the site, weather, errors and jitter included. The same seed gives the same tables.',
+    'Simulates the tables that the instruments of a case would have brought home, had the orbits been those of its mock block: nights of the site, weather, errors and jitter included; light curves of a survey and of nights around a transit, and tables of mid-times, where the block asks for them. The same seed gives the same tables.',
   ],
   options: [
     SEED_OPTION,
@@ -58,6 +67,7 @@ export const mock: Command = {
   ],
   examples: [
     ['tugline mock data-samples/vellamo.yaml --out simulated', 'writes simulated/north.csv and simulated/south.csv'],
+    ['tugline mock data-samples/lainehtar.yaml --out simulated-transits', 'velocities, a survey light curve, two nights at the telescope and a table of mid-times'],
     ['tugline mock data-samples/vellamo.yaml --seed 7 --out simulated --force', 'the same nights with other weather and noise, over the old tables'],
     ['tugline mock data-samples/vellamo.yaml --out simulated-for-script --json', 'prints what was written as JSON'],
   ], // prettier-ignore

@@ -1,12 +1,12 @@
-/** `tugline solve`: velocities in; orbit, mass and dossier out. */
+/** `tugline solve`: velocities, light curves and mid-times in; orbit, mass, radius and dossier out. */
 import { availableParallelism } from 'node:os';
-import { join } from 'node:path';
+import { basename, dirname, join } from 'node:path';
 
 import type { RunFacts } from '../../dossier/run-record.js';
 import type { CommandArguments } from '../command-arguments.js';
 import type { Command } from '../command.js';
 import {
-  DRAW_LIMIT_OPTION, FORCE_OPTION, INPUT_OPTIONS, MODEL_OPTIONS, outOption, QUICK_OPTION, SEARCH_OPTIONS, SEED_OPTION, STAR_OPTIONS, TARGET_OPTION,
+  DRAW_LIMIT_OPTION, FORCE_OPTION, INPUT_OPTIONS, MODEL_OPTIONS, outOption, QUICK_OPTION, SEARCH_OPTIONS, SEED_OPTION, STAR_OPTIONS, TARGET_OPTION, TIMINGS_OPTION,
 } from '../options.js'; // prettier-ignore
 import { withInterrupt } from '../interrupt.js';
 import { withProgress } from '../progress.js';
@@ -28,26 +28,42 @@ const MOST_THREADS = 4;
 async function run(given: CommandArguments, terminal: Terminal): Promise<number> {
   const started = performance.now();
   const choices = solvingChoices(given);
-  const { readVelocities, requestedCase } = await import('../inputs.js');
-  const { checkDestination, dossierFiles, fileNameFrom, solutionJson, writeDossier } =
-    await import('../../dossier/index.js');
+  const { readObservations, requestedCase } = await import('../inputs.js');
+  const {
+    checkDestination,
+    checkFiles,
+    dossierFiles,
+    fileNameFrom,
+    solutionJson,
+    timingsTable,
+    writeDossier,
+    writeFiles,
+  } = await import('../../dossier/index.js');
 
   const theCase = await requestedCase(given);
   const folder = given.folder() ?? `dossier-${fileNameFrom(theCase.target, 'target')}`;
   const writing = { force: given.isOn('force') };
   await checkDestination(folder, writing);
-  const velocities = await readVelocities(theCase, given, terminal);
+  const timings = given.text('timings-out') ?? null;
+  if (timings !== null) await checkFiles(dirname(timings), [basename(timings)], writing);
+  const observations = await readObservations(theCase, given, terminal);
 
   const solved = await withProgress(terminal, given.isOn('quiet'), async (onProgress) => {
-    const { solveWithPosterior } = await import('../../solving/solve-with-posterior.js');
+    const { solveObservations } = await import('../../solving/joint/solve-observations.js');
     const threads = Math.min(MOST_THREADS, availableParallelism());
     const solution = await withInterrupt(terminal, (signal) =>
-      solveWithPosterior(theCase, velocities, { ...choices, threads, signal, onProgress }),
+      solveObservations(theCase, observations, { ...choices, threads, signal, onProgress }),
     );
     onProgress('drawing charts', 0);
     const { renderCharts } = await import('../../dossier/charts/index.js');
     const files = dossierFiles(solution, await renderCharts(solution), () => runFacts(started));
     await writeDossier(folder, files, writing);
+    if (timings !== null)
+      await writeFiles(
+        dirname(timings),
+        [{ name: basename(timings), bytes: timingsTable(solution) }],
+        writing,
+      );
     return solution;
   });
 
@@ -64,7 +80,7 @@ export const solve: Command = {
   operands: 'CASE|TABLE...',
   summary: 'the main job: companions, orbits, masses, and the dossier',
   description: [
-    'Finds the companions in the velocities, fits their orbits, derives their masses, samples the posterior, and writes a dossier: solution, report, tables and charts.',
+    'Finds the companions in velocities, light curves and mid-times, in whatever mix there is, fits everything together, derives masses and radii, samples the posterior, and writes a dossier: solution, report, tables and charts.',
     'Takes one case (.yaml) or any number of tables; - reads one table from standard input. Options win over the case. Ctrl-C while the posterior is sampled ends the sampling and gives the result so far, marked as interrupted.',
   ],
   options: [
@@ -76,6 +92,7 @@ export const solve: Command = {
     QUICK_OPTION,
     DRAW_LIMIT_OPTION,
     SEED_OPTION,
+    TIMINGS_OPTION,
     outOption('folder of the dossier (default: dossier- and the name of the target)'),
     FORCE_OPTION,
   ],

@@ -2,6 +2,9 @@
 import type { CompanionRecord, PosteriorRecord, Quantity, Solved } from '../../solving/types.js';
 import { keyOf, drawnBoundOf } from '../../dossier/draws.js';
 import { plainLabel } from '../../dossier/escape.js';
+import { hasVelocities, observedSpan, scatterWords } from '../../dossier/observed.js';
+import { isTransiting } from '../../dossier/titles.js';
+import { densityLines, lightCurveLines, midTimeLines, transitRows } from './photometry-lines.js';
 import { logBayesFactor } from '../../dossier/evidence-words.js';
 import {
   formatProbability,
@@ -70,7 +73,9 @@ function companionRows(companion: CompanionRecord, { posterior }: Solved): Row[]
     ...(derived.mass.value === null ? row('minimum mass', derived.minimumMass) : row('mass', derived.mass)),
     ...row('semi-major axis', derived.semiMajorAxis),
     ...(derived.semiMajorAxis.value === null ? row('mass function', derived.massFunction) : []),
-    ...row('transit probability', derived.transitProbability),
+    ...(isTransiting(companion)
+      ? transitRows(companion, posterior)
+      : row('transit probability', derived.transitProbability)),
     ...row('equilibrium temperature', derived.equilibriumTemperature),
     ...evidenceRows(companion),
     rivalRow(companion),
@@ -107,15 +112,32 @@ function driftLines({ record: { velocity } }: Solved): string[] {
   return rows.length === 0 ? [] : [...columnsOf(rows).map((line) => `   ${line}`), ''];
 }
 
-function headline({ record, velocities }: Solved): string {
+/** `38 velocities, 3 light curves, 14 mid-times`. */
+function dataWords({ record: { photometry }, velocities }: Solved): string {
+  const tables = photometry?.lightCurves.length ?? 0;
+  const times = (photometry?.midTimes ?? []).reduce((sum, { count }) => sum + count, 0);
+  return [
+    ...(velocities.count > 0 || photometry === undefined ? [`${velocities.count} velocities`] : []),
+    ...(tables > 0 ? [`${tables} light curve${tables === 1 ? '' : 's'}`] : []),
+    ...(times > 0 ? [`${times} mid-times`] : []),
+  ].join(', ');
+}
+
+/** What was found, and from what: one line, or two where light curves make it long. */
+function headlines(solved: Solved, paint: Painter): string[] {
+  const { record } = solved;
   const count = record.companions.length;
-  const days = (velocities.timesBjdTdb[velocities.count - 1] ?? 0) - (velocities.timesBjdTdb[0] ?? 0);
+  const { first, last } = observedSpan(solved);
+  const scatter = scatterWords(solved);
   const found = {
     companions: `${count} companion${count === 1 ? '' : 's'}`,
     nothing: 'no companion found',
     unusable: 'no usable solution',
   }[verdictOf(record)];
-  return `${plainLabel(record.target, 30)}: ${found}; ${velocities.count} velocities in ${significant(days, 5)} d; rms ${significant(record.fit.rms, 3)} m/s`;
+  const title = `${plainLabel(record.target, 30)}: ${found}`;
+  const data = `${dataWords(solved)} in ${significant(last - first, 5)} d${scatter === '' ? '' : `; ${scatter}`}`;
+  if (record.photometry === undefined) return [paint('heading', `${title}; ${data}`)];
+  return [paint('heading', title), ...wrapped(data, SCREEN_WIDTH - 3).map((line) => `   ${line}`)];
 }
 
 /** Messages that must not be overlooked, broken into lines with a mark in front of the first. */
@@ -173,12 +195,13 @@ export function solutionScreen(solved: Solved, folder: string, paint: Painter): 
   const { record } = solved;
   const messages = [...candidateMessages(solved), ...record.warnings.map((warning) => warning.message)];
   return [
-    paint('heading', headline(solved)),
+    ...headlines(solved, paint),
     '',
     ...record.companions.flatMap((companion) => [...companionLines(companion, solved, paint), '']),
-    ...driftLines(solved),
-    ...instrumentLines(solved),
-    '',
+    ...(hasVelocities(solved) ? [...driftLines(solved), ...instrumentLines(solved), ''] : []),
+    ...lightCurveLines(solved),
+    ...midTimeLines(solved),
+    ...densityLines(solved),
     ...columnsOf([
       ...fitRows(solved),
       ...uncertaintyRows(record.posterior),

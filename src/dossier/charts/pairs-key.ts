@@ -9,6 +9,8 @@ import { drawRuns, runsWidth } from './text-runs.js';
 import type { TextRun } from './text-runs.js';
 import { unitText } from './value-axis.js';
 
+/** Width of the samples with their words. */
+const MARKS_PX = 118;
 const SIZE_PX = 8.4;
 const LINE_PX = 11.6;
 const BETWEEN_PX = 6;
@@ -45,11 +47,13 @@ export function paintPairsKey(sheet: Sheet, box: Box, shown: readonly ShownQuant
       x += widths[column]! + BETWEEN_PX;
     });
   }
-  paintMarks(
-    sheet,
-    Math.max(box.left + widths.reduce((sum, width) => sum + width + BETWEEN_PX, 24), box.left + 150),
-    box.top,
+  const beside = Math.max(
+    box.left + widths.reduce((sum, width) => sum + width + BETWEEN_PX, 24),
+    box.left + 150,
   );
+  // Below the numbers where there is no room beside them.
+  if (beside + MARKS_PX <= box.left + box.width + 4) paintMarks(sheet, beside, box.top);
+  else paintMarks(sheet, box.left, y + LINE_PX);
 }
 
 function paintMarks(sheet: Sheet, left: number, top: number): void {

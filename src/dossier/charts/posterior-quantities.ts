@@ -1,5 +1,5 @@
 /** The quantities of a posterior that charts show: symbol, unit, draws, reported value, and the bounds that nature sets. */
-import type { PosteriorColumn, Solved } from '../../solving/types.js';
+import type { PosteriorColumn, Quantity, Solved } from '../../solving/types.js';
 import { cleanLabel } from './labels.js';
 import type { TextRun } from './text-runs.js';
 
@@ -24,9 +24,17 @@ const below = (text: string): TextRun => ({ text, place: 'below' });
 const NONE = [-Infinity, Infinity] as const;
 const POSITIVE = [0, Infinity] as const;
 
-/** Symbol, its subscript, and bounds of the quantities of one companion, by their key. */
+/** Symbol, its subscript, what follows it, and bounds of the quantities of one companion, by their key. */
 const OF_COMPANION: Readonly<
-  Record<string, { symbol: readonly TextRun[]; sub?: string; bounds: readonly [number, number] }>
+  Record<
+    string,
+    {
+      symbol: readonly TextRun[];
+      sub?: string;
+      tail?: readonly TextRun[];
+      bounds: readonly [number, number];
+    }
+  >
 > = {
   period: { symbol: [italic('P')], bounds: POSITIVE },
   semiAmplitude: { symbol: [italic('K')], bounds: POSITIVE },
@@ -36,11 +44,23 @@ const OF_COMPANION: Readonly<
   timeOfInferiorConjunction: { symbol: [italic('T')], sub: 'conj', bounds: NONE },
   minimumMass: { symbol: [italic('m'), { text: ' sin ' }, italic('i')], bounds: POSITIVE },
   semiMajorAxis: { symbol: [italic('a')], bounds: POSITIVE },
+  mass: { symbol: [italic('m')], bounds: POSITIVE },
+  radiusRatio: { symbol: [italic('k')], bounds: POSITIVE },
+  impactParameter: { symbol: [italic('b')], bounds: POSITIVE },
+  scaledSemiMajorAxis: {
+    symbol: [italic('a')],
+    tail: [{ text: '/' }, italic('R'), below('★')],
+    bounds: POSITIVE,
+  },
+  inclination: { symbol: [italic('i')], bounds: [0, 90] },
+  radius: { symbol: [italic('r')], bounds: POSITIVE },
 };
 
 const UNITS: Readonly<Record<string, string>> = {
   deg: '°',
   M_jup: 'M_Jup',
+  R_jup: 'R_Jup',
+  'g/cm3': 'g/cm³',
   'm/s/yr^2': 'm/s/yr²',
 };
 
@@ -72,7 +92,7 @@ export function fittedQuantities(solved: Solved): DrawnQuantity[] {
       const companion = solved.record.companions.findIndex(({ letter }) => letter === parts[1]);
       return [ofCompanion(solved, column, companion, parts.at(-1)!, true)];
     }
-    return [ofVelocity(solved, column)];
+    return [ofLight(solved, column) ?? ofVelocity(solved, column)];
   });
 }
 
@@ -84,7 +104,10 @@ function ofCompanion(
   withLetter: boolean,
 ): DrawnQuantity {
   const own = record.companions[companion];
-  const known = OF_COMPANION[key] ?? { symbol: [{ text: cleanLabel(key, 24) }], bounds: NONE };
+  const known: (typeof OF_COMPANION)[string] = OF_COMPANION[key] ?? {
+    symbol: [{ text: cleanLabel(key, 24) }],
+    bounds: NONE,
+  };
   const letter = withLetter && own !== undefined ? cleanLabel(own.letter, 8) : '';
   const sub = [letter, known.sub ?? ''].filter((part) => part !== '').join(', ');
   const quantities: Readonly<Record<string, { readonly value: number | null } | undefined>> = {
@@ -93,7 +116,7 @@ function ofCompanion(
   };
   return {
     ...common(column),
-    symbol: sub === '' ? known.symbol : [...known.symbol, below(sub)],
+    symbol: [...known.symbol, ...(sub === '' ? [] : [below(sub)]), ...(known.tail ?? [])],
     reported: quantities[key]?.value ?? null,
     bounds: known.bounds,
   };
@@ -131,6 +154,44 @@ function ofVelocity({ record }: Solved, column: PosteriorColumn): DrawnQuantity 
     reported: null,
     bounds: NONE,
   };
+}
+
+/** Both coefficients of limb darkening of a band; those without draws are left out. */
+export function limbDarkeningQuantities(solved: Solved, band: string): DrawnQuantity[] {
+  const columns = solved.posterior?.columns ?? [];
+  return ['u1', 'u2'].flatMap((key) => {
+    const column = columns.find((one) => one.key === `photometry.bands.${band}.${key}`);
+    const quantity = column === undefined ? null : ofLight(solved, column);
+    return quantity === null ? [] : [quantity];
+  });
+}
+
+/** A column of the light curves; `null` when it is not one of them. */
+function ofLight({ record }: Solved, column: PosteriorColumn): DrawnQuantity | null {
+  const { photometry } = record;
+  if (photometry === undefined || !column.key.startsWith('photometry.')) return null;
+  const quantity = (
+    symbol: readonly TextRun[],
+    reported: Quantity,
+    bounds: readonly [number, number],
+  ): DrawnQuantity => ({ ...common(column), symbol, reported: reported.value, bounds });
+  for (const { name, u1, u2 } of photometry.bands) {
+    const sub = below(cleanLabel(name, 10));
+    const start = `photometry.bands.${name}`;
+    if (column.key === `${start}.u1`) return quantity([italic('u'), { text: '1 ' }, sub], u1, NONE);
+    if (column.key === `${start}.u2`) return quantity([italic('u'), { text: '2 ' }, sub], u2, NONE);
+  }
+  for (const { name, jitter, dilution } of photometry.lightCurves) {
+    const start = `photometry.lightCurves.${name}`;
+    const label = cleanLabel(name, 18);
+    if (column.key === `${start}.jitter`) return quantity([{ text: `jitter ${label}` }], jitter, POSITIVE);
+    if (column.key === `${start}.dilution`)
+      return quantity([{ text: `foreign light ${label}` }], dilution, [0, 1]);
+  }
+  for (const { letter, path, jitter } of photometry.midTimes)
+    if (column.key === `photometry.midTimes.${letter}.${path}.jitter`)
+      return quantity([{ text: `jitter ${cleanLabel(path, 18)}` }], jitter, POSITIVE);
+  return null;
 }
 
 function common(column: PosteriorColumn): Pick<DrawnQuantity, 'key' | 'unit' | 'values' | 'cycle'> {

@@ -1,20 +1,33 @@
 /** All charts of a solution, drawn and encoded. */
+import type { DipSpectrum } from '../../solving/transit-types.js';
 import type { SearchStage, Solved, WindowFunction } from '../../solving/types.js';
+import { hasVelocities } from '../observed.js';
 import { chainsCharts } from './chains-chart.js';
 import type { ChartDrawing, ChartFile } from './chart-drawing.js';
+import { dipSpectraCharts, dipsCharts } from './dips-chart.js';
 import { foldedCharts } from './folded-chart.js';
+import { lightCurveCharts } from './light-curve-chart.js';
 import { marginalsCharts } from './marginals-chart.js';
+import { midTimesCharts } from './mid-times-chart.js';
+import { oddEvenCharts } from './odd-even-chart.js';
 import { orbitCharts } from './orbit-chart.js';
 import { loadPainter } from './paint.js';
 import { pairsCharts } from './pairs-chart.js';
 import { periodogramChart, periodogramCharts } from './periodogram-chart.js';
+import { transitCharts } from './transit-chart.js';
+import { transitsCharts } from './transits-chart.js';
 import { velocitiesChart } from './velocities-chart.js';
 
 /** The charts of a dossier, in its order. A new chart is one file and one line here. */
 const CHARTS: readonly ((solved: Solved) => readonly ChartDrawing[])[] = [
-  (solved) => [velocitiesChart(solved)],
-  foldedCharts,
-  periodogramCharts,
+  (solved) => (hasVelocities(solved) ? [velocitiesChart(solved)] : []),
+  lightCurveCharts,
+  transitCharts,
+  transitsCharts,
+  oddEvenCharts,
+  midTimesCharts,
+  dipsCharts,
+  (solved) => (hasVelocities(solved) ? [...foldedCharts(solved), ...periodogramCharts(solved)] : []),
   orbitCharts,
   marginalsCharts,
   pairsCharts,
@@ -51,6 +64,16 @@ export function renderPeriodsCharts(
   return renderDrawings(
     stages.map((stage, index) => periodogramChart({ window, record: { target } }, stage, index)),
   );
+}
+
+/**
+ * Draws the spectra of a search for dips that was not followed by a solution.
+ *
+ * @param spectra - one chart each
+ * @param target - name of the target; any text
+ */
+export function renderDipsCharts(spectra: readonly DipSpectrum[], target: string): Promise<ChartFile[]> {
+  return renderDrawings(dipSpectraCharts(spectra, target));
 }
 
 /** Draws what is described, each as PNG and as SVG. */

@@ -10,6 +10,7 @@ import type {
 import { escapeMarkdown } from '../escape.js';
 import { logBayesFactor, oddsOf, SCALE_SENTENCE, strengthOf } from '../evidence-words.js';
 import { formatProbability, formatQuantity, significant, typographicMinus } from '../numbers.js';
+import { scatterParts } from '../observed.js';
 import {
   divergenceSentence,
   energySentence,
@@ -58,17 +59,19 @@ function evidenceParagraph(companion: CompanionRecord, sampled: boolean): string
   );
 }
 
-function fitParagraph({ fit }: SolutionRecord): string {
+function fitParagraph(solved: Solved): string {
+  const { fit } = solved.record;
   const state =
     fit.status === 'converged'
       ? 'The fit converged'
       : fit.status === 'iteration-limit'
         ? 'The fit stopped at its limit of iterations'
         : 'The fit failed';
+  const scatter = listed(scatterParts(solved));
   const aicc = fit.aicc === null ? '' : `, AICc ${tenths(fit.aicc)}`;
   return (
     `${state} (${escapeMarkdown(fit.reason)}). With ${fit.freeParameters} free parameters it leaves a scatter of ` +
-    `${significant(fit.rms, 3)} m/s (rms), χ² = ${tenths(fit.chiSquare)} for ${fit.degreesOfFreedom} degrees of freedom with the jitters counted ` +
+    `${scatter} (rms), χ² = ${tenths(fit.chiSquare)} for ${fit.degreesOfFreedom} degrees of freedom with the jitters counted ` +
     `as noise, ln L = ${tenths(fit.logLikelihood)} and BIC = ${tenths(fit.bic)}${aicc}.`
   );
 }
@@ -150,17 +153,18 @@ function leftoverParagraph(stages: Solved['stages']): string[] {
 
 export const certainty: ReportSection = {
   heading: 'How sure this is',
-  blocks: ({ record, stages, posterior }, context) => {
+  blocks: (solved, context) => {
+    const { record, stages, posterior } = solved;
     const sampled = record.posterior !== null;
     return [
       ...record.companions.map((companion) => evidenceParagraph(companion, sampled)),
       ...(record.companions.some(hasFactor) ? [SCALE_SENTENCE] : []),
       ...leftoverParagraph(stages),
-      fitParagraph(record),
+      fitParagraph(solved),
       ...uncertaintyParagraphs(record),
       'Intervals are central and hold 68.3 % of the probability; sides that differ by less than 10 % of their mean are written as one ± with that mean ' +
         `(solution.json has both). ${posterior === null ? 'A limit marked 84 % is the upper end of such an interval.' : 'A limit marked 95 % has 95 % of the draws below it.'}`,
-      ...chartBlocks(context, /^(periodogram|marginals$|pairs-|chains$)/),
+      ...chartBlocks(context, /^(periodogram|marginals$|pairs-|shape-|chains$)/),
     ];
   },
 };

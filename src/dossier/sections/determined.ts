@@ -4,8 +4,9 @@ import { drawnBoundOf, keyOf } from '../draws.js';
 import { correlationSentences, shapeSentences, type NamedColumn } from '../draw-sentences.js';
 import { escapeMarkdown } from '../escape.js';
 import { formatQuantity, isUpperLimit, significant, typographicMinus } from '../numbers.js';
+import { hasVelocities, observedSpan } from '../observed.js';
 import { modeText, shownModes } from '../posterior-words.js';
-import { DERIVED_TITLES, ELEMENT_ORDER, ELEMENT_TITLES, listed } from '../titles.js';
+import { DERIVED_TITLES, isTransiting, listed, titledElements } from '../titles.js';
 import { verdictOf } from '../verdict.js';
 import type { ReportSection } from './section.js';
 
@@ -46,8 +47,17 @@ function sizesItem(companion: CompanionRecord, solved: Solved): string[] {
   const sizes: (readonly [string, Quantity])[] = [
     ['period', elements.period],
     ['semi-amplitude', elements.semiAmplitude],
+    ...(elements.radiusRatio === undefined ? [] : [['radius ratio', elements.radiusRatio] as const]),
+    ...(elements.scaledSemiMajorAxis === undefined
+      ? []
+      : [['semi-major axis in stellar radii', elements.scaledSemiMajorAxis] as const]),
     ...(eccentricityIsOpen(companion, solved) ? [] : [['eccentricity', elements.eccentricity] as const]),
-    [DERIVED_TITLES.minimumMass.words, derived.minimumMass],
+    ...(isTransiting(companion)
+      ? ([
+          ['mass', derived.mass],
+          ['radius', derived.radius ?? derived.mass],
+        ] as const)
+      : [[DERIVED_TITLES.minimumMass.words, derived.minimumMass] as const]),
     ['semi-major axis', derived.semiMajorAxis],
   ];
   const classes: readonly (readonly [string, (share: number) => boolean])[] = [
@@ -77,6 +87,25 @@ function eccentricityItem(companion: CompanionRecord, solved: Solved): string[] 
   return [`The eccentricity of ${letter} is compatible with zero: ${shown}.`];
 }
 
+function impactIsOpen(
+  { letter, elements: { impactParameter } }: CompanionRecord,
+  { posterior }: Solved,
+): boolean {
+  return (
+    impactParameter !== undefined &&
+    isUpperLimit(impactParameter, drawnBoundOf(posterior, keyOf.element(letter, 'impactParameter')))
+  );
+}
+
+/** A transit that may be central bounds the inclination on one side only. */
+function impactItem(companion: CompanionRecord, solved: Solved): string[] {
+  const { letter, elements } = companion;
+  if (elements.impactParameter === undefined || !impactIsOpen(companion, solved)) return [];
+  const drawn = drawnBoundOf(solved.posterior, keyOf.element(letter, 'impactParameter'));
+  const shown = formatQuantity(elements.impactParameter, 'markdown', { zeroBounded: true, drawn });
+  return [`The impact parameter of ${letter} is compatible with a central transit: ${shown}.`];
+}
+
 /** The angle and what hangs on it; times are compared with the period. */
 function orientationItem(companion: CompanionRecord): string[] {
   const { letter, elements } = companion;
@@ -98,8 +127,8 @@ function orientationItem(companion: CompanionRecord): string[] {
 }
 
 function longPeriodItem({ letter, elements: { period } }: CompanionRecord, solved: Solved): string[] {
-  const { timesBjdTdb, count } = solved.velocities;
-  const span = (timesBjdTdb[count - 1] ?? 0) - (timesBjdTdb[0] ?? 0);
+  const { first, last } = observedSpan(solved);
+  const span = last - first;
   const { value, lower, upper } = period;
   if (value === null || span <= 0 || (upper ?? value) <= span) return [];
   const surely = (lower ?? value) > span;
@@ -148,13 +177,15 @@ function modeItems({ record: { posterior } }: Solved): string[] {
 function namedColumns(solved: Solved): NamedColumn[] {
   const { record } = solved;
   const companions = record.companions.flatMap((companion) =>
-    ELEMENT_ORDER.map((key): NamedColumn => {
-      const limit = key === 'eccentricity' && eccentricityIsOpen(companion, solved);
+    titledElements(companion).map(({ key, title }): NamedColumn => {
+      const limit =
+        (key === 'eccentricity' && eccentricityIsOpen(companion, solved)) ||
+        (key === 'impactParameter' && impactIsOpen(companion, solved));
       const open =
         argumentIsOpen(companion) && (key === 'argumentOfPeriastron' || key === 'timeOfPeriastron');
       return {
         key: keyOf.element(companion.letter, key),
-        words: `${ELEMENT_TITLES[key].words.replace(/ \(.*\)$/, '')} of ${companion.letter}`,
+        words: `${title.words.replace(/ \(.*\)$/, '')} of ${companion.letter}`,
         settled: limit || open,
       };
     }),
@@ -188,9 +219,10 @@ export const determined: ReportSection = {
         ...longPeriodItem(companion, solved),
         ...sizesItem(companion, solved),
         ...eccentricityItem(companion, solved),
+        ...impactItem(companion, solved),
         ...orientationItem(companion),
       ]),
-      ...driftItems(solved),
+      ...(hasVelocities(solved) ? driftItems(solved) : []),
       ...jitterItems(solved),
       ...correlationSentences(solved.posterior, namedColumns(solved)),
       ...shapeSentences(solved.posterior, namedColumns(solved)),

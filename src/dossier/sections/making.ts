@@ -11,6 +11,8 @@ const FILE_NOTES: readonly (readonly [string, string])[] = [
   ['elements.csv', 'every number of the solution at full precision, one a row'],
   ['residuals.csv', 'each velocity with model and residual, and the file and line it came from'],
   ['model.csv', 'the model on a fine grid of times, in all and companion by companion'],
+  ['light-curve.csv', 'each point of a light curve that was fitted: flux, error, baseline, transit model, residual, table, cycle'],
+  ['mid-times.csv', 'all mid-times against the ephemeris of this solution, and where they come from'],
   ['posterior.csv', 'the draws of the posterior, one a row: chain, draw, ln of the density, and every free quantity by its path in solution.json'],
   ['charts/', 'the charts, as PNG at 300 dots per inch and as SVG'],
   ['run.json', 'date, duration and machine: the only file that differs when the run is repeated'],

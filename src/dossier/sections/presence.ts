@@ -3,14 +3,15 @@ import type { CompanionRecord, Quantity, SolutionRecord, Solved } from '../../so
 import { keyOf, drawnBoundOf } from '../draws.js';
 import { escapeMarkdown } from '../escape.js';
 import { formatProbability, formatQuantity, isUpperLimit, significant, type DrawnBound } from '../numbers.js';
+import { hasVelocities, observedSpan, observedWords } from '../observed.js';
 import { modeText, shownModes } from '../posterior-words.js';
 import {
   counted,
-  DERIVED_ORDER,
-  DERIVED_TITLES,
-  ELEMENT_ORDER,
   ELEMENT_TITLES,
+  isTransiting,
   listed,
+  readableDerived,
+  titledElements,
   type Title,
 } from '../titles.js';
 import { verdictOf } from '../verdict.js';
@@ -20,19 +21,26 @@ function shown(quantity: Quantity, title?: Title, drawn: DrawnBound | null = nul
   return formatQuantity(quantity, 'markdown', { zeroBounded: title?.zeroBounded === true, drawn });
 }
 
-function overview({ record, velocities }: Solved): string {
-  const first = velocities.timesBjdTdb[0] ?? record.epoch;
-  const last = velocities.timesBjdTdb[velocities.count - 1] ?? first;
+function overview(solved: Solved): string {
+  const { record } = solved;
+  const { first, last } = observedSpan(solved);
   const verdict = {
     companions: `show ${counted(record.companions.length, 'companion')}`,
     nothing: 'show no companion that clears the thresholds of this search',
     unusable: 'gave no usable solution; what follows is where the search stopped and must not be cited',
   }[verdictOf(record)];
   return (
-    `The ${velocities.count} velocities of ${escapeMarkdown(record.target)}, taken with ` +
-    `${counted(velocities.instruments.length, 'instrument')} over ${significant(last - first, 5)} d ` +
+    `${observedSentenceStart(solved)} over ${significant(last - first, 5)} d ` +
     `(from ${first.toFixed(2)} to ${last.toFixed(2)}, ${record.timeScale}), ${verdict}.`
   );
+}
+
+function observedSentenceStart(solved: Solved): string {
+  const { record, velocities } = solved;
+  const target = escapeMarkdown(record.target);
+  return record.photometry === undefined
+    ? `The ${velocities.count} velocities of ${target}, taken with ${counted(velocities.instruments.length, 'instrument')}`
+    : `The observations of ${target}, ${observedWords(solved)},`;
 }
 
 function orbitSentence(companion: CompanionRecord, { record: { star }, posterior }: Solved): string {
@@ -43,32 +51,30 @@ function orbitSentence(companion: CompanionRecord, { record: { star }, posterior
     : isUpperLimit(elements.eccentricity, drawn)
       ? `on an orbit whose eccentricity is ${shown(elements.eccentricity, ELEMENT_TITLES.eccentricity, drawn)}`
       : `on an eccentric orbit, e = ${shown(elements.eccentricity)}`;
-  const heavy = derived.mass.value === null ? derived.minimumMass : derived.mass;
-  const massName = derived.mass.value === null ? 'minimum mass (m sin i)' : 'mass';
+  // A transit fixes the inclination, so that nothing is a minimum any more.
+  const isBound = derived.mass.value === null && !isTransiting(companion);
+  const heavy = isBound ? derived.minimumMass : derived.mass;
+  const massName = isBound ? 'minimum mass (m sin i)' : 'mass';
   const mass =
     heavy.value === null
       ? `Its ${massName} is not known${heavy.why === undefined ? '' : `: ${escapeMarkdown(heavy.why)}`}.`
       : `Its ${massName} is ${shown(heavy)} for a star of ${shown(star.mass)}.`;
-  return (
-    `Companion ${letter} goes round in ${shown(elements.period)} ${shape}, and moves the star ` +
-    `with a semi-amplitude of ${shown(elements.semiAmplitude)}. ${mass}`
-  );
+  const pull =
+    elements.semiAmplitude.value === null
+      ? `; how it moves the star is ${shown(elements.semiAmplitude)}`
+      : `, and moves the star with a semi-amplitude of ${shown(elements.semiAmplitude)}`;
+  return `Companion ${letter} goes round in ${shown(elements.period)} ${shape}${pull}. ${mass}`;
 }
 
 function quantitiesTable(companion: CompanionRecord, { posterior }: Solved): string {
   const rows = [
-    ...ELEMENT_ORDER.map((key) => [
-      ELEMENT_TITLES[key].words,
-      shown(
-        companion.elements[key],
-        ELEMENT_TITLES[key],
-        drawnBoundOf(posterior, keyOf.element(companion.letter, key)),
-      ),
+    ...titledElements(companion).map(({ key, title, quantity }) => [
+      title.words,
+      shown(quantity, title, drawnBoundOf(posterior, keyOf.element(companion.letter, key))),
     ]),
-    ...DERIVED_ORDER.filter((key) => companion.derived[key].value !== null).map((key) => [
-      DERIVED_TITLES[key].words,
-      shown(companion.derived[key], DERIVED_TITLES[key]),
-    ]),
+    ...readableDerived(companion)
+      .filter(({ quantity }) => quantity.value !== null)
+      .map(({ title, quantity }) => [title.words, shown(quantity, title)]),
   ];
   return markdownTable(['quantity', 'value'], rows);
 }
@@ -76,11 +82,10 @@ function quantitiesTable(companion: CompanionRecord, { posterior }: Solved): str
 /** What could not be derived, with the reason said once for all the quantities that share it. */
 function missing(companion: CompanionRecord): string[] {
   const byReason = new Map<string, string[]>();
-  for (const key of DERIVED_ORDER) {
-    const quantity = companion.derived[key];
+  for (const { title, quantity } of readableDerived(companion)) {
     if (quantity.value !== null) continue;
     const reason = quantity.why ?? 'no reason recorded';
-    byReason.set(reason, [...(byReason.get(reason) ?? []), DERIVED_TITLES[key].words]);
+    byReason.set(reason, [...(byReason.get(reason) ?? []), title.words]);
   }
   return [...byReason].map(
     ([reason, names]) => `Not derived (${escapeMarkdown(reason)}): ${names.join('; ')}.`,
@@ -144,7 +149,7 @@ export const presence: ReportSection = {
         ...missing(companion),
         ...chartBlocks(context, new RegExp(`^(folded|orbit)-${companion.letter}$`)),
       ]),
-      ...driftSentence(record),
+      ...(hasVelocities(solved) ? driftSentence(record) : []),
       ...candidateSentences(record),
       ...neighbourSentences(record),
       ...chartBlocks(context, /^orbits$/),

@@ -35,6 +35,7 @@ function rejoined(cells: readonly string[]): string[] {
 
 export const blanksFormat: TableFormat = {
   delimiter: 'blanks',
+  separator: ' ',
   looksLike: () => true,
   split(lines) {
     const rows: RawRow[] = lines.map((line) => ({

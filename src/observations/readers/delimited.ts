@@ -77,6 +77,7 @@ export function delimitedFormat(
 ): TableFormat {
   return {
     delimiter,
+    separator,
     looksLike,
     split: (lines) => splitLines(lines, separator),
     splitHeader: (text) =>

@@ -14,6 +14,11 @@ export interface RawRow {
 
 export interface TableFormat {
   readonly delimiter: VelocityTable['delimiter'];
+  /**
+   * The one character between cells, a blank for runs of blanks: long tables are then read without `split`, except lines with
+   * quotation marks or comments in them. `null` where cells are told apart otherwise.
+   */
+  readonly separator: string | null;
   /** Whether these lines (a sample of the first ones) look like this format. The first format of the list that says yes is taken. */
   looksLike(sample: readonly string[]): boolean;
   /** All rows in order. `broken` names lines that could not be split. */

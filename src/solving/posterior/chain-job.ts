@@ -5,10 +5,15 @@ import type { ModelPlan } from '../model-builder.js';
 import { ModelBuilder } from '../model-builder.js';
 import { NutsChain } from '../../numerics/sampling/nuts.js';
 import { RandomStream } from '../../numerics/random.js';
+import type { JointRecipe } from '../joint/joint-data.js';
+import { JointDensity } from '../joint/joint-density.js';
 import { PosteriorDensity } from './posterior-density.js';
 import type { PriorScales } from './priors.js';
+import type { SampledDensity } from './sampled-density.js';
 
+/** Velocities alone. */
 export interface DensityRecipe {
+  readonly kind: 'velocities';
   readonly data: VelocityData;
   readonly instruments: readonly string[];
   readonly theCase: Case;
@@ -18,7 +23,7 @@ export interface DensityRecipe {
 }
 
 export interface ChainRecipe {
-  readonly density: DensityRecipe;
+  readonly density: DensityRecipe | JointRecipe;
   readonly start: Float64Array;
   /** First guess of the posterior covariance, row-major. */
   readonly covariance: Float64Array;
@@ -36,6 +41,10 @@ export interface ChainOutput {
   readonly divergences: number;
 }
 
+function sampledDensity(recipe: DensityRecipe | JointRecipe): SampledDensity {
+  return recipe.kind === 'joint' ? new JointDensity(recipe, 'all') : densityOf(recipe);
+}
+
 export function densityOf(recipe: DensityRecipe): PosteriorDensity {
   const builder = new ModelBuilder(recipe.data, recipe.instruments, recipe.theCase, recipe.epochBjdTdb);
   return new PosteriorDensity(builder.problem(recipe.plan), recipe.plan, recipe.scales);
@@ -46,7 +55,7 @@ export class ChainRunner {
   readonly #chain: NutsChain;
 
   constructor(recipe: ChainRecipe) {
-    const density = densityOf(recipe.density);
+    const density = sampledDensity(recipe.density);
     const { start, covariance, warmup } = recipe;
     this.#chain = new NutsChain(
       density,

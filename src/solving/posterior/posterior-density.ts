@@ -11,11 +11,12 @@ import type { VelocityProblem } from '../problem.js';
 import { circularMap, eccentricMap, type CompanionMap } from './companion-map.js';
 import { jitterDial, type JitterDial } from './jitter-dial.js';
 import type { PriorScales } from './priors.js';
+import type { SampledDensity } from './sampled-density.js';
 import { statedMap } from './stated-map.js';
 import { VelocityLikelihood } from './velocity-likelihood.js';
 
 /** Position vector: companions, free linear parameters (zero points, slope, curvature), free jitters. */
-export class PosteriorDensity implements SmoothDensity {
+export class PosteriorDensity implements SampledDensity {
   readonly size: number;
   readonly #problem: VelocityProblem;
   readonly #term: VelocityTerm;
@@ -252,5 +253,29 @@ export class PosteriorDensity implements SmoothDensity {
       jittersMps[dial.instrument] = dial.value(position[this.#jitterStart + j]!);
     });
     return portableFrom(this.#coordinates, this.#maps.length, linear, jittersMps);
+  }
+
+  /** Numbers whose chains are judged: free of wrapping and of mirror images. */
+  judged(position: Float64Array): number[] {
+    const portable = this.portable(position);
+    return [
+      ...portable.companions.flatMap((companion) => {
+        const root = Math.sqrt(companion.eccentricity);
+        const omega = companion.argPeriastronStarRad;
+        const longitude = omega - (2 * Math.PI * companion.timePeriastronDays) / companion.periodDays;
+        return [
+          Math.log(companion.periodDays),
+          companion.eccentricity,
+          root * Math.cos(omega),
+          root * Math.sin(omega),
+          Math.cos(longitude),
+          Math.sin(longitude),
+          Math.log(companion.semiAmplitudeMps),
+        ];
+      }),
+      ...portable.zeroPointsMps,
+      ...portable.drift,
+      ...portable.jittersMps,
+    ];
   }
 }

@@ -6,6 +6,7 @@ import type { DerivedKey, ElementKey, PosteriorColumn, PosteriorDraws } from '..
 import { ELEMENT_UNITS, drawStars, type Sampled } from '../uncertainties.js';
 import { derivedUnit } from '../derived.js';
 import type { Case } from '../../observations/types.js';
+import type { PosteriorDensity } from './posterior-density.js';
 import type { ModeSample } from './sample-mode.js';
 
 const DERIVED: readonly DerivedKey[] = ['minimumMass', 'semiMajorAxis'];
@@ -75,7 +76,7 @@ function sharedColumns(sampled: Sampled, velocities: VelocitySet): Column[] {
 
 /** All draws, chain after chain; columns that never vary (fixed by the case) are left out. */
 export function posteriorDraws(
-  sample: ModeSample,
+  sample: ModeSample<PosteriorDensity>,
   sampled: Sampled,
   theCase: Case,
   letters: readonly string[],

@@ -2,12 +2,11 @@
 import { bulkEss, ebfmi, rankNormalisedRHat, tailEss } from '../../numerics/sampling/diagnostics.js';
 import { bridgeEvidence } from '../../numerics/sampling/bridge.js';
 import { RandomStream } from '../../numerics/random.js';
-import type { PortablePoint } from '../model-builder.js';
 import type { ChainOutput } from './chain-job.js';
-import { densityOf, type DensityRecipe } from './chain-job.js';
+import type { ChainRecipe } from './chain-job.js';
 import type { ChainPool } from './chain-pool.js';
+import type { SampledDensity } from './sampled-density.js';
 import { curvatureOfDensity } from './density-curvature.js';
-import type { PosteriorDensity } from './posterior-density.js';
 
 /** What "converged" means, and how far sampling goes to get there. */
 export const CONVERGENCE = {
@@ -20,8 +19,8 @@ export const CONVERGENCE = {
   limit: 10_000,
 } as const;
 
-export interface ModeSample {
-  readonly density: PosteriorDensity;
+export interface ModeSample<D extends SampledDensity> {
+  readonly density: D;
   /** Positions of each chain, row-major (draws, size). */
   readonly chains: readonly Float64Array[];
   readonly logDensities: readonly Float64Array[];
@@ -48,42 +47,18 @@ export interface ModeOptions {
   readonly onProgress: (share: number) => void;
 }
 
-/** Numbers whose chains are judged: free of wrapping and of mirror images. */
-export function judgedNumbers(density: PosteriorDensity, position: Float64Array): number[] {
-  const portable = density.portable(position);
-  return [
-    ...portable.companions.flatMap((companion) => {
-      const root = Math.sqrt(companion.eccentricity);
-      const omega = companion.argPeriastronStarRad;
-      const longitude = omega - (2 * Math.PI * companion.timePeriastronDays) / companion.periodDays;
-      return [
-        Math.log(companion.periodDays),
-        companion.eccentricity,
-        root * Math.cos(omega),
-        root * Math.sin(omega),
-        Math.cos(longitude),
-        Math.sin(longitude),
-        Math.log(companion.semiAmplitudeMps),
-      ];
-    }),
-    ...portable.zeroPointsMps,
-    ...portable.drift,
-    ...portable.jittersMps,
-  ];
-}
-
 interface Judgement {
   readonly rHatMax: number;
   readonly bulkEssMin: number;
   readonly tailEssMin: number;
 }
 
-function judge(density: PosteriorDensity, chains: readonly Float64Array[]): Judgement {
+function judge(density: SampledDensity, chains: readonly Float64Array[]): Judgement {
   const { size } = density;
   const perChain = chains.map((positions) => {
     const draws = positions.length / size;
     const rows = Array.from({ length: draws }, (_, d) =>
-      judgedNumbers(density, positions.subarray(d * size, (d + 1) * size)),
+      density.judged(positions.subarray(d * size, (d + 1) * size)),
     );
     const width = rows[0]?.length ?? 0;
     return Array.from({ length: width }, (_, k) => Float64Array.from(rows, (row) => row[k]!));
@@ -115,7 +90,7 @@ function joined(parts: readonly Float64Array[]): Float64Array {
 
 /** Marginal likelihood of a mode from its draws, folded onto one mirror image of the jitters. */
 function evidenceFromDraws(
-  density: PosteriorDensity,
+  density: SampledDensity,
   chains: readonly Float64Array[],
   random: RandomStream,
 ): { readonly logEvidence: number; readonly standardError: number } {
@@ -125,14 +100,18 @@ function evidenceFromDraws(
   return bridgeEvidence(density.folded, all, { random });
 }
 
-export async function sampleMode(
+/**
+ * @param recipe - what the threads make the density from
+ * @param density - the same density, for use in this thread
+ * @param position - where the chains start: the maximum of the mode
+ */
+export async function sampleMode<D extends SampledDensity>(
   pool: ChainPool,
-  recipe: DensityRecipe,
-  start: PortablePoint,
+  recipe: ChainRecipe['density'],
+  density: D,
+  position: Float64Array,
   options: ModeOptions,
-): Promise<ModeSample> {
-  const density = densityOf(recipe);
-  const position = density.position(start);
+): Promise<ModeSample<D>> {
   const covariance = curvatureOfDensity(density, position);
   await pool.start(
     Array.from({ length: CONVERGENCE.chains }, (_, chain) => ({

@@ -14,10 +14,11 @@ import { allRivals } from '../settle.js';
 import type { PosteriorDraws, PosteriorRecord } from '../types.js';
 import { drawStars, passagesNearData, starOf, type Sampled } from '../uncertainties.js';
 import { chainPool } from './chain-pool.js';
-import type { DensityRecipe } from './chain-job.js';
+import { densityOf, type DensityRecipe } from './chain-job.js';
 import { priorScales, priorSentences, type PriorScales } from './priors.js';
 import { CONVERGENCE, sampleMode, type ModeSample } from './sample-mode.js';
 import { marginalsOf, type CompanionMarginals } from './marginals.js';
+import type { PosteriorDensity } from './posterior-density.js';
 import { posteriorDraws } from './posterior-draws.js';
 
 export interface PosteriorOptions {
@@ -85,11 +86,12 @@ export async function samplePosterior(
   const scales = scalesOf(settled, theCase);
   const fits = modeFits(settled);
   const pool = chainPool(Math.min(options.threads, CONVERGENCE.chains));
-  const samples: { readonly planned: PlannedFit; readonly sample: ModeSample }[] = [];
+  const samples: { readonly planned: PlannedFit; readonly sample: ModeSample<PosteriorDensity> }[] = [];
   try {
     for (const [index, planned] of fits.entries()) {
       if (index > 0 && options.isStopped()) break;
       const recipe: DensityRecipe = {
+        kind: 'velocities',
         data: explorer.builder.data,
         instruments: velocities.instruments,
         theCase,
@@ -97,7 +99,8 @@ export async function samplePosterior(
         plan: planned.plan,
         scales,
       };
-      const sample = await sampleMode(pool, recipe, explorer.portable(planned), {
+      const density = densityOf(recipe);
+      const sample = await sampleMode(pool, recipe, density, density.position(explorer.portable(planned)), {
         seed: options.seed,
         stream: 1000 * (index + 1),
         limit: options.limit,
@@ -177,7 +180,7 @@ export async function samplePosterior(
 function sampledFromMode(
   settled: Settled,
   planned: PlannedFit,
-  sample: ModeSample,
+  sample: ModeSample<PosteriorDensity>,
   theCase: Case,
   seed: number,
 ): Sampled {

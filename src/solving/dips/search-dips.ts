@@ -1,0 +1,217 @@
+/** The search for dips in light curves: one companion after the other, with the dips of the earlier ones masked. */
+import type { DipSpectrum } from '../transit-types.js';
+import { BoxSearch } from './box-search.js';
+import { periodicCandidate, singleCandidate, weighDip, type WeighedDip } from './candidate.js';
+import { detrended, weightedSeries, type Detrended } from './detrend.js';
+import { shortestDurationDays } from './duration-range.js';
+import { detectionEfficiency, highestPeaks } from './efficiency.js';
+import { strongestEvent } from './events.js';
+import { judgePeriodic, judgeSingle, sameCompanion, type Verdict } from './judge.js';
+import { spectrumOf } from './dip-spectrum.js';
+import { refineNear, refineTrapezoid } from './refine.js';
+import { choosePeriod } from './related-periods.js';
+import { durationBounds, searchSettings, type SearchSettings } from './search-settings.js';
+import { loudestSingle } from './single-events.js';
+import type { WeightedSeries } from './ticked-series.js';
+import { distanceDays, type TrapezoidShape } from './trapezoid.js';
+import { unseenNoiseFactor } from './unseen-noise.js';
+import type { DipCandidate, DipData, DipSearch, DipSearchOptions, RejectedDip } from './types.js';
+
+/** Peaks of a spectrum that are refined before noise is called noise. */
+const PEAKS_REFINED = 3;
+/** Peaks this close (relative) are one. */
+const PEAKS_APART = 0.005;
+/** Rejected dips that are masked, so that what hides behind them is found. */
+const MOST_DISTRUSTED = 6;
+/** A dip is masked with this share of its duration on either side. */
+const MASK_MARGIN = 0.1;
+
+export type DipProgress = (stage: string, fraction: number) => void;
+
+/** What is masked so far, and the light curve without its trend. */
+interface Hunt {
+  readonly data: DipData;
+  readonly settings: SearchSettings;
+  readonly isMasked: Uint8Array;
+  light: Detrended;
+}
+
+/** A dip that has been looked at, with the candidate that it makes. */
+interface Verdicted {
+  readonly verdict: Verdict;
+  readonly candidate: DipCandidate;
+  readonly weighed: WeighedDip;
+}
+
+/** @throws RangeError for fewer than two times or an empty range of periods */
+export function searchDips(
+  data: DipData,
+  options: DipSearchOptions = {},
+  progress: DipProgress = () => undefined,
+): DipSearch {
+  const settings = searchSettings(data, options);
+  const isMasked = new Uint8Array(data.timesDays.length);
+  const hunt: Hunt = {
+    data,
+    settings,
+    isMasked,
+    light: detrended(data, isMasked, settings.windowDays, settings.loneLow),
+  };
+  const candidates: DipCandidate[] = [];
+  const rejected: RejectedDip[] = [];
+  const stages: DipSpectrum[] = [];
+  let distrusted = 0;
+  while (candidates.length < settings.most && distrusted < MOST_DISTRUSTED) {
+    const said = candidates.length === 0 ? 'searching dips' : `searching dips, ${candidates.length} found`;
+    const found = lookForPeriod(hunt, stages, candidates, (share) => {
+      progress(said, (candidates.length + share) / (candidates.length + 1));
+    });
+    const dip = found?.verdict.kind === 'weak' || found === null ? (lookForSingle(hunt) ?? found) : found;
+    if (dip === null) break;
+    if (dip.verdict.kind === 'accepted') candidates.push(dip.candidate);
+    else {
+      rejected.push({ ...dip.candidate, why: dip.verdict.why });
+      if (dip.verdict.kind === 'weak') break;
+      distrusted++;
+    }
+    mask(hunt, dip.weighed.refined.shape, isMasked);
+    hunt.light = detrended(data, isMasked, settings.windowDays, settings.loneLow);
+  }
+  const { trend, isOutlier, errorScales } = hunt.light;
+  return {
+    candidates,
+    rejected,
+    stages,
+    trend,
+    isOutlier,
+    settings: [
+      ...settings.said,
+      `errors of the tables scaled by ${errorScales.map((scale) => scale.toPrecision(3)).join(', ')}`,
+    ],
+  };
+}
+
+/** Marks the dips of a shape. */
+function mask(hunt: Hunt, shape: TrapezoidShape, isMasked: Uint8Array): void {
+  const reach = (0.5 + MASK_MARGIN) * shape.durationDays + 0.5 * hunt.settings.spacingDays;
+  hunt.data.timesDays.forEach((time, i) => {
+    if (distanceDays(shape, time) <= reach) isMasked[i] = 1;
+  });
+}
+
+/** The light curve again, with the dips of `shape` left out of the trend but not of the series. */
+function seriesFor(hunt: Hunt, shape: TrapezoidShape): WeightedSeries {
+  const masked = hunt.isMasked.slice();
+  mask(hunt, shape, masked);
+  const { windowDays, loneLow } = hunt.settings;
+  return weightedSeries(
+    hunt.data.timesDays,
+    detrended(hunt.data, masked, windowDays, loneLow),
+    hunt.isMasked,
+  );
+}
+
+/** Red noise over the duration of a dip, everywhere else. */
+function noiseFor(hunt: Hunt, shape: TrapezoidShape): number {
+  const masked = hunt.isMasked.slice();
+  mask(hunt, shape, masked);
+  return unseenNoiseFactor(hunt.data, hunt.settings, masked, shape.durationDays);
+}
+
+/** The best of the first peaks of the spectrum, refined; `null` where no period can be searched or nothing dips. */
+function lookForPeriod(
+  hunt: Hunt,
+  stages: DipSpectrum[],
+  accepted: readonly DipCandidate[],
+  onProgress: (share: number) => void,
+): Verdicted | null {
+  const { grid } = hunt.settings;
+  if (grid === null) return null;
+  const series = weightedSeries(hunt.data.timesDays, hunt.light, hunt.isMasked);
+  const search = new BoxSearch(series, grid, 'joined', onProgress);
+  const efficiency = detectionEfficiency(search.signalResidue);
+  const peaks = highestPeaks(efficiency, grid.frequenciesPerDay, 10, PEAKS_APART);
+  stages.push(spectrumOf(search, efficiency, peaks, accepted.length));
+  let best: Verdicted | null = null;
+  for (const index of refinedPeaks(search.signalResidue, efficiency, grid.frequenciesPerDay)) {
+    const looked = lookAtPeak(hunt, series, search, index, efficiency[index]!, accepted);
+    if (looked === null) continue;
+    if (best === null || looked.candidate.signalToNoise > best.candidate.signalToNoise) best = looked;
+    if (looked.verdict.kind === 'accepted') return looked;
+  }
+  if (best?.verdict.kind !== 'one event') return best;
+  return strongestAlone(hunt, best) ?? best;
+}
+
+/** Highest peaks by efficiency, and the highest by residue: long periods may stand low against their neighbours. */
+function refinedPeaks(residue: Float64Array, efficiency: Float64Array, frequencies: Float64Array): number[] {
+  const first = highestPeaks(efficiency, frequencies, PEAKS_REFINED, PEAKS_APART);
+  return [...new Set([...first, ...highestPeaks(residue, frequencies, 1, PEAKS_APART)])];
+}
+
+function lookAtPeak(
+  hunt: Hunt,
+  series: WeightedSeries,
+  search: BoxSearch,
+  index: number,
+  efficiency: number,
+  accepted: readonly DipCandidate[],
+): Verdicted | null {
+  const { settings } = hunt;
+  const { range, spanDays, spacingDays } = settings;
+  const peak = search.peakAt(index);
+  if (!(peak.depth > 0)) return null;
+  const width = Math.max(2 * shortestDurationDays(range, peak.periodDays), peak.durationDays) / spanDays;
+  const bounds = durationBounds(range, peak.periodDays);
+  const first = refineNear(series, peak.periodDays, width, bounds);
+  if (first === null) return null;
+  // Once more with the trend taken without these dips.
+  const clean = seriesFor(hunt, first.shape);
+  const second = refineNear(clean, first.shape.periodDays, 0.5 * width, bounds) ?? first;
+  const weighed = weighDip(clean, second, spacingDays, noiseFor(hunt, second.shape));
+  if (weighed.events.length === 0) return null;
+  const { chosen, related } = choosePeriod(
+    clean,
+    weighed,
+    spacingDays,
+    spanDays,
+    settings.shortestPeriodDays,
+    (periodDays) => durationBounds(range, periodDays),
+  );
+  const verdict = judgePeriodic(chosen, efficiency, settings);
+  const same = verdict.kind === 'weak' ? null : sameCompanion(chosen.refined.shape, accepted, spanDays);
+  return {
+    verdict: same ?? verdict,
+    candidate: periodicCandidate(clean, chosen, spacingDays, settings.volume, efficiency, related),
+    weighed: chosen,
+  };
+}
+
+/** Where a period rests on one event: that event by itself. */
+function strongestAlone(hunt: Hunt, looked: Verdicted): Verdicted | null {
+  const event = strongestEvent(looked.weighed.events);
+  return judgedSingle(hunt, event.midTimeDays, looked.candidate.durationDays);
+}
+
+/** The most significant event at any time; `null` unless it is significant. */
+function lookForSingle(hunt: Hunt): Verdicted | null {
+  const series = weightedSeries(hunt.data.timesDays, hunt.light, hunt.isMasked);
+  const box = loudestSingle(series, hunt.settings);
+  const judged = box === null ? null : judgedSingle(hunt, box.midTimeDays, box.durationDays);
+  return judged?.verdict.kind === 'weak' ? null : judged;
+}
+
+function judgedSingle(hunt: Hunt, midTimeDays: number, durationDays: number): Verdicted | null {
+  const { spacingDays, singleBounds, singleVolume } = hunt.settings;
+  const shape = { periodDays: Infinity, midTimeDays, durationDays, slopeShare: 0 };
+  const series = seriesFor(hunt, shape);
+  const refined = refineTrapezoid(series, Infinity, midTimeDays, durationDays, singleBounds);
+  if (refined === null) return null;
+  const weighed = weighDip(series, refined, spacingDays, noiseFor(hunt, refined.shape));
+  if (weighed.events.length === 0) return null;
+  return {
+    verdict: judgeSingle(weighed, hunt.settings),
+    candidate: singleCandidate(series, weighed, spacingDays, singleVolume),
+    weighed,
+  };
+}

@@ -1,0 +1,112 @@
+/** Which terms a baseline needs beside its constant: added one at a time while the evidence pays for them. */
+import { prepareCurve, type PreparedCurve } from './prepare-curve.js';
+import type { Ephemeris } from './curve-windows.js';
+
+/** A term must lower the BIC by this much. */
+const MARGIN = 6;
+/** Terms that are tried at most: with more, something is fitted that is no baseline. */
+const MOST_TERMS = 4;
+/** A regressor that is this closely tied to time or to another one is that one. */
+const TWIN = 0.999;
+
+/** BIC of one curve with its present design: transits held, one common scale of the errors free. */
+function bicOf(curve: PreparedCurve, transit: Float64Array): number {
+  const { data } = curve;
+  let chiSquare = 0;
+  let parameters = 0;
+  let count = 0;
+  for (const { start, end, design, columns } of data.segments) {
+    const rows = end - start;
+    const basis: Float64Array[] = [];
+    for (let j = 0; j < columns; j++) {
+      const own = Float64Array.from(
+        { length: rows },
+        (_, i) => (design[i * columns + j]! * transit[start + i]!) / data.sigmas[start + i]!,
+      );
+      const size = length(own);
+      for (const other of basis) subtract(own, other);
+      const norm = length(own);
+      if (norm > 1e-9 * size) basis.push(own.map((value) => value / norm));
+    }
+    const residual = Float64Array.from(
+      { length: rows },
+      (_, i) => data.flux[start + i]! / data.sigmas[start + i]!,
+    );
+    for (const other of basis) subtract(residual, other);
+    for (const value of residual) chiSquare += value * value;
+    parameters += basis.length;
+    count += rows;
+  }
+  return count * Math.log(chiSquare / count) + parameters * Math.log(count);
+}
+
+function subtract(vector: Float64Array, unit: Float64Array): void {
+  let product = 0;
+  for (let i = 0; i < vector.length; i++) product += vector[i]! * unit[i]!;
+  for (let i = 0; i < vector.length; i++) vector[i]! -= product * unit[i]!;
+}
+
+/** Terms that may enter: polynomials of time; in a single night also the regressors of the table. */
+function candidates(curve: PreparedCurve): string[] {
+  const terms = ['time', 'time^2'];
+  if (curve.windows.length > 1) return terms;
+  const kept: Float64Array[] = [curve.data.timesDays];
+  for (const [label, values] of curve.table.regressors) {
+    if (kept.some((other) => Math.abs(correlation(other, values)) > TWIN)) continue;
+    kept.push(values);
+    terms.push(label);
+  }
+  return terms;
+}
+
+function correlation(a: Float64Array, b: Float64Array): number {
+  const n = Math.min(a.length, b.length);
+  let [ma, mb] = [0, 0];
+  for (let i = 0; i < n; i++) {
+    ma += a[i]! / n;
+    mb += b[i]! / n;
+  }
+  let [aa, bb, ab] = [0, 0, 0];
+  for (let i = 0; i < n; i++) {
+    aa += (a[i]! - ma) ** 2;
+    bb += (b[i]! - mb) ** 2;
+    ab += (a[i]! - ma) * (b[i]! - mb);
+  }
+  return aa > 0 && bb > 0 ? ab / Math.sqrt(aa * bb) : 1;
+}
+
+/**
+ * Terms of the baseline of a curve for which the table leaves the choice to the evidence.
+ *
+ * @param transit - relative flux of the present model at the points of the curve
+ */
+export function chooseBaseline(
+  curve: PreparedCurve,
+  epochBjdTdb: number,
+  ephemerides: readonly Ephemeris[],
+  transit: Float64Array,
+): string[] {
+  const terms: string[] = [];
+  const withTerms = (list: readonly string[]): number =>
+    bicOf(prepareCurve(curve.table, epochBjdTdb, ephemerides, curve.data.band, list)!, transit);
+  let bic = withTerms(terms);
+  const open = new Set(candidates(curve));
+  while (terms.length < MOST_TERMS) {
+    const tried = [...open]
+      .filter((term) => term !== 'time^2' || terms.includes('time'))
+      .map((term) => ({ term, bic: withTerms([...terms, term]) }))
+      .sort((a, b) => a.bic - b.bic);
+    const [best] = tried;
+    if (best === undefined || best.bic > bic - MARGIN) break;
+    terms.push(best.term);
+    open.delete(best.term);
+    bic = best.bic;
+  }
+  return terms;
+}
+
+function length(vector: Float64Array): number {
+  let sum = 0;
+  for (const value of vector) sum += value * value;
+  return Math.sqrt(sum);
+}

@@ -1,0 +1,97 @@
+/** Draws around the joint maximum: of the posterior by the sampler, or of the curvature at the maximum. */
+import { choleskyInPlace } from '../../numerics/linear-algebra.js';
+import { RandomStream } from '../../numerics/random.js';
+import { chainPool } from '../posterior/chain-pool.js';
+import { curvatureOfDensity } from '../posterior/density-curvature.js';
+import { CONVERGENCE, sampleMode } from '../posterior/sample-mode.js';
+import type { PosteriorOptions } from '../posterior/sample-posterior.js';
+import type { PosteriorRecord } from '../types.js';
+import { jointPriorSentences } from './joint-priors.js';
+import { JointDensity } from './joint-density.js';
+import type { SettledJoint } from './settle-joint.js';
+import { BRIEF, maximise } from './maximise.js';
+
+/** Draws of the curvature where nothing is sampled. */
+const CURVATURE_DRAWS = 4000;
+const STREAM = 9000;
+
+export interface JointSample {
+  /** Of the posterior. */
+  readonly density: JointDensity;
+  /** Positions of each chain, row-major (draws, size). */
+  readonly chains: readonly Float64Array[];
+  readonly logDensities: readonly Float64Array[];
+  readonly drawsPerChain: number;
+  /** `null` for draws of the curvature. */
+  readonly record: PosteriorRecord | null;
+}
+
+export async function sampleJoint(
+  settled: SettledJoint,
+  periodsDays: readonly number[],
+  options: PosteriorOptions,
+): Promise<JointSample> {
+  const { recipe } = settled.fit;
+  const density = new JointDensity(recipe, 'all');
+  const start = maximise(density, density.coordinates.position(settled.fit.natural), BRIEF).position;
+  const pool = chainPool(Math.min(options.threads, CONVERGENCE.chains));
+  try {
+    const sample = await sampleMode(pool, recipe, density, start, {
+      seed: options.seed,
+      stream: STREAM,
+      limit: options.limit,
+      isStopped: options.isStopped,
+      onProgress: options.onProgress,
+    });
+    const { chains, logDensities, drawsPerChain, logEvidence, logEvidenceError } = sample;
+    const record: PosteriorRecord = {
+      method: 'no-U-turn Hamiltonian Monte Carlo (Hoffman & Gelman 2014), dense metric',
+      chains: CONVERGENCE.chains,
+      draws: CONVERGENCE.chains * drawsPerChain,
+      warmup: CONVERGENCE.warmup,
+      rHatMax: sample.rHatMax,
+      bulkEssMin: sample.bulkEssMin,
+      tailEssMin: sample.tailEssMin,
+      ebfmiMin: sample.ebfmiMin,
+      divergences: sample.divergences,
+      status: sample.interrupted ? 'interrupted' : sample.converged ? 'converged' : 'draw-limit',
+      logEvidence,
+      logEvidenceError,
+      modes: [{ periods: periodsDays, logEvidence, standardError: logEvidenceError, weight: 1 }],
+      priors: jointPriorSentences(recipe),
+    };
+    return { density, chains, logDensities, drawsPerChain, record };
+  } finally {
+    await pool.close();
+  }
+}
+
+/** Gaussian draws from the curvature of the posterior at its maximum. */
+export function drawJointCurvature(settled: SettledJoint, seed: number): JointSample {
+  const density = new JointDensity(settled.fit.recipe, 'all');
+  const { size } = density;
+  const centre = maximise(density, density.coordinates.position(settled.fit.natural), BRIEF).position;
+  const factor = curvatureOfDensity(density, centre);
+  const isUsable = choleskyInPlace(factor, size);
+  const random = RandomStream.fromSeed(seed, STREAM);
+  const positions: number[] = [];
+  const draw = new Float64Array(size);
+  const normal = new Float64Array(size);
+  for (let d = 0; isUsable && d < CURVATURE_DRAWS; d++) {
+    for (let j = 0; j < size; j++) normal[j] = random.normal();
+    for (let j = 0; j < size; j++) {
+      let sum = centre[j]!;
+      for (let k = 0; k <= j; k++) sum += factor[j * size + k]! * normal[k]!;
+      draw[j] = sum;
+    }
+    if (density.coordinates.read(draw) > -Infinity) positions.push(...draw);
+  }
+  const count = positions.length / size;
+  return {
+    density,
+    chains: [Float64Array.from(positions)],
+    logDensities: [new Float64Array(count)],
+    drawsPerChain: count,
+    record: null,
+  };
+}

@@ -1,0 +1,265 @@
+/** Which companions transit, and when: from mid-times, from the case, and from the light curves themselves. */
+import { InputDataError } from '../../errors.js';
+import type { LightCurveTable, MidTimeTable, Observations } from '../../observations/photometry-types.js';
+import type { Case, ElementChoice } from '../../observations/types.js';
+import { dipDataOf } from '../dips/dip-data.js';
+import { searchDips } from '../dips/search-dips.js';
+import type { DipCandidate, DipData, DipSearch } from '../dips/types.js';
+import { numberCycles } from '../timing/cycles.js';
+import { mergeMidTimes } from '../timing/timing-data.js';
+import { straightLine, type FoundTransit, type NumberedSet, type TransitSearch } from './found-transit.js';
+import { dipOfEphemeris, dipOfNight } from './event-dips.js';
+
+/** Light curves shorter than this are nights on a known target: nothing periodic is searched in them alone. */
+const SURVEY_DAYS = 1.5;
+/** A dip in a single night is believed above this gain in chi-square. */
+const NIGHT_GAIN = 40;
+/** Phases of two ephemerides of the same companion agree within this many durations. */
+const SAME_WITHIN_DURATIONS = 1;
+
+interface Known {
+  readonly letter: string | null;
+  readonly periodDays: number;
+  readonly periodSigmaDays: number;
+  readonly midTimeDays: number;
+  readonly midTimeSigmaDays: number;
+  readonly how: 'mid-times' | 'case';
+}
+
+export function searchTransits(
+  theCase: Case,
+  observations: Observations,
+  epochBjdTdb: number,
+  progress: (stage: string, fraction: number) => void,
+): TransitSearch {
+  const { lightCurves, midTimes } = observations;
+  const notices: { code: string; message: string }[] = [];
+  const sets = numberedSets(theCase, midTimes, epochBjdTdb, notices);
+  const known = [...sets.map((set) => knownFromSet(set)), ...knownFromCase(theCase, epochBjdTdb, sets)];
+  const surveys = lightCurves.filter(
+    (table) => table.used > 50 && table.timesBjdTdb.at(-1)! - table.timesBjdTdb[0]! > SURVEY_DAYS,
+  );
+  const data = surveys.length === 0 ? null : dipDataOf(surveys, epochBjdTdb);
+  const dips = data === null ? null : searchSurveys(theCase, data, progress);
+  const unmatched = new Set<DipCandidate>(dips?.candidates ?? []);
+  const transits: FoundTransit[] = [];
+  for (const ephemeris of known) {
+    const candidate = [...unmatched].find((other) => isSame(other, ephemeris)) ?? null;
+    if (candidate !== null) unmatched.delete(candidate);
+    transits.push(knownTransit(ephemeris, candidate, lightCurves, epochBjdTdb, transits.length, theCase));
+  }
+  for (const candidate of unmatched) transits.push(searchedTransit(candidate, transits.length, theCase));
+  if (transits.length === 0 && dips === null)
+    transits.push(...nightTransits(lightCurves, epochBjdTdb, theCase));
+  return {
+    transits: transits.slice(0, 20),
+    sets,
+    dips,
+    surveyed: surveys.map(({ name }) => name),
+    tableOf: data?.segmentOf ?? new Uint16Array(0),
+    notices,
+  };
+}
+
+/** Mid-times of each companion, numbered. */
+function numberedSets(
+  theCase: Case,
+  tables: readonly MidTimeTable[],
+  epochBjdTdb: number,
+  notices: { code: string; message: string }[],
+): NumberedSet[] {
+  const letters = [...new Set(tables.map((table) => table.companion ?? 'b'))].sort();
+  return letters.flatMap((letter) => {
+    const own = tables.filter((table) => (table.companion ?? 'b') === letter);
+    const merged = mergeMidTimes(own);
+    notices.push(...merged.notices);
+    const stated = listed(theCase).find((choice) => choice.letter === letter)?.elements.period;
+    const periodDays = stated === undefined ? null : centreOf(stated);
+    if (merged.times.count < 2) {
+      const [path = ''] = own.map((table) => table.path);
+      throw new InputDataError([
+        {
+          code: 'too-few-mid-times',
+          file: path,
+          line: null,
+          column: null,
+          field: null,
+          message: 'one mid-time gives no ephemeris',
+          hint: 'add mid-times, or give the light curve itself',
+        },
+      ]);
+    }
+    const numbering = numberCycles(merged.times, { periodDays, renumber: false });
+    notices.push(...numbering.notices);
+    const shift = numbering.times.originBjdTdb - epochBjdTdb;
+    return [{ letter, times: numbering.times, line: straightLine(numbering.times, shift) }];
+  });
+}
+
+function listed(theCase: Case): Exclude<Case['companions'], 'auto' | number> {
+  return typeof theCase.companions === 'object' ? theCase.companions : [];
+}
+
+function centreOf(choice: ElementChoice): number {
+  return choice.kind === 'range' ? 0.5 * (choice.low + choice.high) : choice.value;
+}
+
+function sigmaOf(choice: ElementChoice): number {
+  return choice.kind === 'range'
+    ? 0.3 * (choice.high - choice.low)
+    : choice.kind === 'prior'
+      ? choice.sigma
+      : 0;
+}
+
+function knownFromSet({ letter, line }: NumberedSet): Known {
+  return {
+    letter,
+    periodDays: line.periodDays,
+    periodSigmaDays: line.periodSigmaDays,
+    midTimeDays: line.timeDays + line.periodDays * line.middleCycle,
+    midTimeSigmaDays: line.middleSigmaDays,
+    how: 'mid-times',
+  };
+}
+
+/** Companions of which the case states period and conjunction, unless mid-times speak of them. */
+function knownFromCase(theCase: Case, epochBjdTdb: number, sets: readonly NumberedSet[]): Known[] {
+  return listed(theCase).flatMap(({ letter, elements }) => {
+    const { period, timeOfInferiorConjunction: conjunction } = elements;
+    if (period === undefined || conjunction === undefined) return [];
+    if (sets.some((set) => set.letter === letter)) return [];
+    return [
+      {
+        letter,
+        periodDays: centreOf(period),
+        periodSigmaDays: sigmaOf(period),
+        midTimeDays: centreOf(conjunction) - epochBjdTdb,
+        midTimeSigmaDays: sigmaOf(conjunction),
+        how: 'case' as const,
+      },
+    ];
+  });
+}
+
+function searchSurveys(
+  theCase: Case,
+  data: DipData,
+  progress: (stage: string, fraction: number) => void,
+): DipSearch {
+  const { massSolar, radiusSolar, densityGcc } = theCase.star;
+  const density =
+    densityGcc?.value ??
+    (massSolar !== null && radiusSolar !== null ? (1.41 * massSolar.value) / radiusSolar.value ** 3 : null);
+  const wanted = typeof theCase.companions === 'number' ? theCase.companions : theCase.maximumCompanions;
+  return searchDips(
+    data,
+    {
+      shortestPeriodDays: theCase.periodRangeDays.low,
+      longestPeriodDays: theCase.periodRangeDays.high,
+      starDensityGcc: density,
+      maximumCompanions: Math.max(1, wanted),
+    },
+    progress,
+  );
+}
+
+/** Whether a dip of the search is the companion of an ephemeris. */
+function isSame(candidate: DipCandidate, known: Known): boolean {
+  const cycles = Math.round((candidate.midTimeDays - known.midTimeDays) / known.periodDays);
+  const off = candidate.midTimeDays - known.midTimeDays - cycles * known.periodDays;
+  const slack =
+    SAME_WITHIN_DURATIONS * candidate.durationDays +
+    3 * (known.midTimeSigmaDays + Math.abs(cycles) * known.periodSigmaDays);
+  if (Math.abs(off) > Math.min(slack, 0.25 * known.periodDays)) return false;
+  if (candidate.periodDays === null) return true;
+  const ratio = candidate.periodDays / known.periodDays;
+  return Math.abs(ratio - 1) < 0.01;
+}
+
+function letterOf(theCase: Case, index: number): string {
+  return listed(theCase)[index]?.letter ?? String.fromCharCode('b'.charCodeAt(0) + index);
+}
+
+function knownTransit(
+  known: Known,
+  candidate: DipCandidate | null,
+  lightCurves: readonly LightCurveTable[],
+  epochBjdTdb: number,
+  place: number,
+  theCase: Case,
+): FoundTransit {
+  const dip =
+    candidate === null
+      ? dipOfEphemeris(lightCurves, epochBjdTdb, known)
+      : { midTimeDays: candidate.midTimeDays, durationDays: candidate.durationDays, depth: candidate.depth };
+  return {
+    ephemeris: {
+      letter: known.letter ?? letterOf(theCase, place),
+      periodDays: known.periodDays,
+      midTimeDays: known.midTimeDays,
+      durationDays: dip?.durationDays ?? 0,
+      depth: dip?.depth ?? 0,
+      occultationLagDays: null,
+    },
+    how: known.how,
+    periodSigmaDays: known.periodSigmaDays,
+    midTimeSigmaDays: known.midTimeSigmaDays,
+    shortestPeriodDays: known.periodDays,
+    candidate,
+    isSeen: dip !== null,
+  };
+}
+
+function searchedTransit(candidate: DipCandidate, place: number, theCase: Case): FoundTransit {
+  return {
+    ephemeris: {
+      letter: letterOf(theCase, place),
+      periodDays: candidate.periodDays,
+      midTimeDays: candidate.midTimeDays,
+      durationDays: candidate.durationDays,
+      depth: candidate.depth,
+      occultationLagDays: null,
+    },
+    how: candidate.kind === 'single' ? 'one event' : 'search',
+    periodSigmaDays: candidate.periodSigmaDays,
+    midTimeSigmaDays: candidate.midTimeSigmaDays,
+    shortestPeriodDays: candidate.shortestPeriodDays,
+    candidate,
+    isSeen: true,
+  };
+}
+
+/** Transits in nights of which no ephemeris is known: one is taken, and a second one only if it belongs to the first. */
+function nightTransits(
+  lightCurves: readonly LightCurveTable[],
+  epochBjdTdb: number,
+  theCase: Case,
+): FoundTransit[] {
+  const seen = lightCurves.flatMap((table) => {
+    const dip = dipOfNight(table, epochBjdTdb);
+    return dip !== null && dip.gain > NIGHT_GAIN ? [{ table, dip }] : [];
+  });
+  const [first] = seen.sort((a, b) => b.dip.gain - a.dip.gain);
+  if (first === undefined) return [];
+  const { dip } = first;
+  const span = first.table.timesBjdTdb.at(-1)! - first.table.timesBjdTdb[0]!;
+  return [
+    {
+      ephemeris: {
+        letter: letterOf(theCase, 0),
+        periodDays: null,
+        midTimeDays: dip.midTimeDays,
+        durationDays: dip.durationDays,
+        depth: dip.depth,
+        occultationLagDays: null,
+      },
+      how: 'one event',
+      periodSigmaDays: null,
+      midTimeSigmaDays: 0.05 * dip.durationDays,
+      shortestPeriodDays: Math.max(0.5 * span, 2 * dip.durationDays),
+      candidate: null,
+      isSeen: true,
+    },
+  ];
+}
