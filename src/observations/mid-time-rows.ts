@@ -70,6 +70,6 @@ export function repeatedTimes(
   }
   if (repeated.length === 0) return [];
   return [
-    { code: 'repeated-time', message: 'the mid-time repeats an earlier row: counted twice', lines: repeated },
+    { code: 'repeated-time', message: 'the mid-time repeats an earlier row', lines: repeated },
   ];
 }

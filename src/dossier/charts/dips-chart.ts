@@ -109,10 +109,15 @@ function peaksOf({ peaks }: DipSpectrum): PeakMark[] {
   return [...peaks]
     .sort((one, other) => other.efficiency - one.efficiency)
     .slice(0, MOST_PEAKS)
-    .map((peak, rank) => ({
+    .map((peak) => ({
       x: peak.periodDays,
       y: peak.efficiency,
-      text: `${significantText(peak.periodDays, 5)} d${rank === 0 ? '' : `, ${cleanLabel(peak.kind, 24)}`}`,
-      strong: rank === 0,
+      text: `${significantText(peak.periodDays, 5)} d${isPlain(peak.kind) ? '' : `, ${cleanLabel(peak.kind, 24)}`}`,
+      strong: isPlain(peak.kind),
     }));
+}
+
+/** The peak that needs no name: the period that was found, or where none was the strongest. */
+function isPlain(kind: string): boolean {
+  return kind === 'found' || kind === 'strongest';
 }

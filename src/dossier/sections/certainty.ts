@@ -51,6 +51,8 @@ function shapeSentence(evidence: Evidence, circular: boolean): string {
 
 function evidenceParagraph(companion: CompanionRecord, sampled: boolean): string {
   const { evidence } = companion;
+  if (evidence.deltaBic === 0 && evidence.deltaLogLikelihood === 0)
+    return `**Companion ${companion.letter}.** Evidence for its presence: ${escapeMarkdown(evidence.falseAlarmMethod)}.`;
   return (
     `**Companion ${companion.letter}.** Adding it raises ln L by ${tenths(evidence.deltaLogLikelihood)} and improves the BIC by ` +
     `${tenths(evidence.deltaBic)}; its false-alarm probability is ${probability(evidence.falseAlarmProbability)}. ` +

@@ -37,8 +37,15 @@ export class EventWindow {
    * @param orbit - prepared, with the bodies apart at periastron
    * @param halfExposureRad - in mean longitude
    * @param depth - size of the loss, fraction of the star's light
+   * @param errorBound - what averages over exposures may be wrong by
    */
-  open(orbit: ProjectedOrbit, radiusRatio: number, halfExposureRad: number, depth: number): void {
+  open(
+    orbit: ProjectedOrbit,
+    radiusRatio: number,
+    halfExposureRad: number,
+    depth: number,
+    errorBound: number,
+  ): void {
     const contacts = this.#contacts;
     contacts.find(orbit, radiusRatio);
     if (!(contacts.last > contacts.first)) {
@@ -59,7 +66,7 @@ export class EventWindow {
     }
     const ingressRad = Math.min(bounds[1] - bounds[0], contacts.last - bounds[this.count - 2]!);
     this.depth = depth;
-    this.atOnce = halfExposureRad === 0 || negligible(halfExposureRad / ingressRad, depth);
+    this.atOnce = halfExposureRad === 0 || negligible(halfExposureRad / ingressRad, depth, errorBound);
     const reachRad = this.atOnce ? 0 : halfExposureRad;
     this.opensRad = contacts.first - reachRad;
     this.widthRad = contacts.last + reachRad - this.opensRad;

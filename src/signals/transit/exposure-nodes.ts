@@ -33,8 +33,8 @@ export function stretched(fraction: number): number {
   return 0.5 - Math.sin(Math.asin(1 - 2 * fraction) / 3);
 }
 
-/** What an average may be wrong by, fraction of the star's light. */
-const GOAL = 1e-8;
+/** What an average may be wrong by unless said otherwise, fraction of the star's light. */
+export const DEFAULT_ERROR_BOUND = 1e-8;
 /**
  * In the complex s plane the loss behaves as if its nearest singularity lay this far beyond the ends of a part: found from
  * the convergence on 20 000 random events, grazing and nearly grazing ones included.
@@ -51,11 +51,12 @@ const MARGIN = 3;
  *
  * @param extent - length of the part in s, (0, 1]
  * @param depth - size of the loss, fraction of the star's light
+ * @param errorBound - what the average may be wrong by, fraction of the star's light
  */
-export function nodesFor(extent: number, depth: number): number {
+export function nodesFor(extent: number, depth: number, errorBound: number): number {
   const x = 1 + (2 * (depth > DEEP ? DEEP_CLEARANCE : CLEARANCE)) / extent;
   const perNode = 2 * Math.log(x + Math.sqrt(x * x - 1));
-  const n = Math.ceil(Math.log((MARGIN * depth) / GOAL) / perNode);
+  const n = Math.ceil(Math.log((MARGIN * depth) / errorBound) / perNode);
   return n < 2 ? 2 : n > MOST_NODES ? MOST_NODES : n;
 }
 
@@ -65,6 +66,6 @@ export function nodesFor(extent: number, depth: number): number {
  *
  * @param halfOverIngress - half an exposure over the time between the contacts of the ingress or egress
  */
-export function negligible(halfOverIngress: number, depth: number): boolean {
-  return 0.5 * depth * halfOverIngress ** 1.5 < GOAL;
+export function negligible(halfOverIngress: number, depth: number, errorBound: number): boolean {
+  return 0.5 * depth * halfOverIngress ** 1.5 < errorBound;
 }

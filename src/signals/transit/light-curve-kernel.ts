@@ -5,7 +5,7 @@ import { ProjectedOrbit } from '../../orbit/projected-orbit.js';
 import { MAXIMUM_ECCENTRICITY } from '../keplerian.js';
 import { OVERLAP_MOMENTS, overlapArea, overlapMoments } from './disc-overlap.js';
 import { EventWindow } from './event-window.js';
-import { NODES, nodesFor, stretched, WEIGHTS } from './exposure-nodes.js';
+import { DEFAULT_ERROR_BOUND, NODES, nodesFor, stretched, WEIGHTS } from './exposure-nodes.js';
 import { starLight } from './transit-flux.js';
 
 /** ln P, lambda0, k, h, radius ratio, impact parameter, ln(a/R_star). */
@@ -21,6 +21,8 @@ export interface LightCurveGrid {
   readonly exposureDays: number;
   /** R_star / c, days; 0 ignores light time across the orbit. */
   readonly starRadiusLightDays: number;
+  /** What averages over exposures may be wrong by, fraction of the star's light; 1e-8 unless given, and far below the errors. */
+  readonly errorBound?: number;
 }
 
 /** Nodes that are solved for in one go: small enough to stay in the cache. */
@@ -39,6 +41,7 @@ const PER_TURN = 1 / TWO_PI;
 export class LightCurveKernel {
   readonly #times: Float64Array;
   readonly #exposureDays: number;
+  readonly #errorBound: number;
   readonly #starRadiusLightDays: number;
   readonly #orbit = new ProjectedOrbit();
   readonly #transit = new EventWindow(true);
@@ -73,6 +76,7 @@ export class LightCurveKernel {
   constructor(grid: LightCurveGrid) {
     this.#times = grid.timesDays;
     this.#exposureDays = grid.exposureDays;
+    this.#errorBound = grid.errorBound ?? DEFAULT_ERROR_BOUND;
     this.#starRadiusLightDays = grid.starRadiusLightDays;
     this.touched = new Int32Array(grid.timesDays.length);
     this.loss = new Float64Array(grid.timesDays.length);
@@ -126,9 +130,9 @@ export class LightCurveKernel {
     this.#occultationDepth = occultationDepth;
     this.#withPartials = withPartials;
     const halfRad = 0.5 * orbit.rate * this.#exposureDays;
-    this.#transit.open(orbit, radiusRatio, halfRad, Math.min(1, radiusRatio * radiusRatio));
+    this.#transit.open(orbit, radiusRatio, halfRad, Math.min(1, radiusRatio * radiusRatio), this.#errorBound);
     if (occultationDepth === 0) this.#occultation.close();
-    else this.#occultation.open(orbit, radiusRatio, halfRad, Math.abs(occultationDepth));
+    else this.#occultation.open(orbit, radiusRatio, halfRad, Math.abs(occultationDepth), this.#errorBound);
     this.#gather(halfRad);
     return true;
   }
@@ -202,7 +206,7 @@ export class LightCurveKernel {
       if (!(from < 1 && to > 0)) continue;
       const fromS = stretched(from);
       const extent = stretched(to) - fromS;
-      const n = nodesFor(extent, event.depth);
+      const n = nodesFor(extent, event.depth, this.#errorBound);
       const first = (n * (n - 1)) / 2;
       for (let node = first; node < first + n; node++) {
         const s = fromS + extent * NODES[node]!;

@@ -29,6 +29,17 @@ export function spectrumOf(
   };
 }
 
+/** The same spectrum with its peaks named by the period that was found in it: `found`, a multiple or fraction of it, or `independent`. */
+export function namedBy(spectrum: DipSpectrum, periodDays: number): DipSpectrum {
+  return {
+    ...spectrum,
+    peaks: spectrum.peaks.map((peak) => {
+      const multiple = multipleOf(peak.periodDays / periodDays);
+      return { ...peak, kind: multiple === 'P' ? 'found' : (multiple ?? 'independent') };
+    }),
+  };
+}
+
 /** `2P`, `P/3`, `3P/2` ... for a ratio near that of small integers, `null` for none. */
 export function multipleOf(ratio: number): string | null {
   for (let p = 1; p <= LARGEST_MULTIPLE; p++)

@@ -103,3 +103,22 @@ export function judgeSingle(weighed: WeighedDip, settings: SearchSettings): Verd
     return { kind: 'distrusted', why: 'a single event at the edge of a gap, without data on both sides' };
   return { kind: 'accepted' };
 }
+
+/** Largest multiple of a period that may have been taken for it. */
+const MOST_TURNS = 12;
+/** Depths of one body's dips differ by less than this share. */
+const ALIKE = 0.35;
+
+/** Whether an accepted candidate is every second, third ... dip of another one. */
+export function isPartOf(taken: DipCandidate, other: DipCandidate): boolean {
+  if (taken.periodDays === null || other.periodDays === null) return false;
+  // Dips of one body are alike; a faint remnant between deep ones is something else.
+  if (Math.abs(taken.depth - other.depth) > ALIKE * Math.max(taken.depth, other.depth)) return false;
+  const turns = Math.round(taken.periodDays / other.periodDays);
+  if (turns < 2 || turns > MOST_TURNS) return false;
+  const within = 0.5 * Math.max(taken.durationDays, other.durationDays);
+  const cycles = Math.max(1, Math.ceil((taken.events.at(-1)! - taken.events[0]!) / taken.periodDays));
+  if (Math.abs(taken.periodDays - turns * other.periodDays) * cycles > 2 * within) return false;
+  const phase = (taken.midTimeDays - other.midTimeDays) / other.periodDays;
+  return Math.abs(phase - Math.round(phase)) * other.periodDays < 2 * within;
+}

@@ -6,8 +6,8 @@ import { detrended, weightedSeries, type Detrended } from './detrend.js';
 import { shortestDurationDays } from './duration-range.js';
 import { detectionEfficiency, highestPeaks } from './efficiency.js';
 import { strongestEvent } from './events.js';
-import { judgePeriodic, judgeSingle, sameCompanion, type Verdict } from './judge.js';
-import { spectrumOf } from './dip-spectrum.js';
+import { isPartOf, judgePeriodic, judgeSingle, sameCompanion, type Verdict } from './judge.js';
+import { namedBy, spectrumOf } from './dip-spectrum.js';
 import { refineNear, refineTrapezoid } from './refine.js';
 import { choosePeriod } from './related-periods.js';
 import { durationBounds, searchSettings, type SearchSettings } from './search-settings.js';
@@ -60,6 +60,9 @@ export function searchDips(
   const candidates: DipCandidate[] = [];
   const rejected: RejectedDip[] = [];
   const stages: DipSpectrum[] = [];
+  /** What the accepted candidates mask, and what the distrusted ones do. */
+  const shapes: TrapezoidShape[] = [];
+  const shapesDistrusted: TrapezoidShape[] = [];
   let distrusted = 0;
   while (candidates.length < settings.most && distrusted < MOST_DISTRUSTED) {
     const said = candidates.length === 0 ? 'searching dips' : `searching dips, ${candidates.length} found`;
@@ -68,8 +71,27 @@ export function searchDips(
     });
     const dip = found?.verdict.kind === 'weak' || found === null ? (lookForSingle(hunt) ?? found) : found;
     if (dip === null) break;
-    if (dip.verdict.kind === 'accepted') candidates.push(dip.candidate);
-    else {
+    if (dip.verdict.kind === 'accepted') {
+      const part = candidates.findIndex((other) => isPartOf(other, dip.candidate));
+      const whole =
+        part < 0
+          ? null
+          : joinedWith(
+              hunt,
+              dip,
+              [...shapes.filter((_, i) => i !== part), ...shapesDistrusted],
+              candidates.filter((_, i) => i !== part),
+            );
+      if (whole === null) candidates.push(dip.candidate);
+      else {
+        candidates[part] = whole.candidate;
+        shapes[part] = whole.weighed.refined.shape;
+        remask(hunt, [...shapes, ...shapesDistrusted]);
+        continue;
+      }
+      shapes.push(dip.weighed.refined.shape);
+    } else {
+      shapesDistrusted.push(dip.weighed.refined.shape);
       rejected.push({ ...dip.candidate, why: dip.verdict.why });
       if (dip.verdict.kind === 'weak') break;
       distrusted++;
@@ -85,6 +107,7 @@ export function searchDips(
     trend,
     isOutlier,
     settings: [
+      ...((data.averaged ?? 1) > 1 ? [`points averaged by up to ${data.averaged}`] : []),
       ...settings.said,
       `errors of the tables scaled by ${errorScales.map((scale) => scale.toPrecision(3)).join(', ')}`,
     ],
@@ -97,6 +120,31 @@ function mask(hunt: Hunt, shape: TrapezoidShape, isMasked: Uint8Array): void {
   hunt.data.timesDays.forEach((time, i) => {
     if (distanceDays(shape, time) <= reach) isMasked[i] = 1;
   });
+}
+
+/** Masks the dips of these shapes and no others, and takes the trend anew. */
+function remask(hunt: Hunt, shapes: readonly TrapezoidShape[]): void {
+  hunt.isMasked.fill(0);
+  for (const shape of shapes) mask(hunt, shape, hunt.isMasked);
+  hunt.light = detrended(hunt.data, hunt.isMasked, hunt.settings.windowDays, hunt.settings.loneLow);
+}
+
+/** A dip with those of its every n-th event that an earlier candidate had taken; `null` where they do not belong together. */
+function joinedWith(
+  hunt: Hunt,
+  dip: Verdicted,
+  others: readonly TrapezoidShape[],
+  accepted: readonly DipCandidate[],
+): Verdicted | null {
+  const before = hunt.isMasked.slice();
+  remask(hunt, others);
+  const series = weightedSeries(hunt.data.timesDays, hunt.light, hunt.isMasked);
+  const { periodDays, durationDays, efficiency } = dip.candidate;
+  const whole = lookAtPeriod(hunt, series, periodDays!, durationDays, efficiency ?? 0, accepted);
+  const turns = whole === null ? NaN : whole.candidate.periodDays! / periodDays!;
+  if (whole?.verdict.kind === 'accepted' && Math.abs(turns - 1) < 0.01) return whole;
+  hunt.isMasked.set(before);
+  return null;
 }
 
 /** The light curve again, with the dips of `shape` left out of the trend but not of the series. */
@@ -136,11 +184,20 @@ function lookForPeriod(
   for (const index of refinedPeaks(search.signalResidue, efficiency, grid.frequenciesPerDay)) {
     const looked = lookAtPeak(hunt, series, search, index, efficiency[index]!, accepted);
     if (looked === null) continue;
-    if (best === null || looked.candidate.signalToNoise > best.candidate.signalToNoise) best = looked;
-    if (looked.verdict.kind === 'accepted') return looked;
+    if (best === null || isBetter(looked, best)) best = looked;
+  }
+  if (best?.verdict.kind === 'accepted') {
+    stages.push(namedBy(stages.pop()!, best.candidate.periodDays!));
+    return best;
   }
   if (best?.verdict.kind !== 'one event') return best;
   return strongestAlone(hunt, best) ?? best;
+}
+
+/** Accepted before not accepted, then the more significant: a fraction of a period has higher neighbours to stand out of, not more signal. */
+function isBetter(a: Verdicted, b: Verdicted): boolean {
+  const [isTaken, wasTaken] = [a.verdict.kind === 'accepted', b.verdict.kind === 'accepted'];
+  return isTaken === wasTaken ? a.candidate.signalToNoise > b.candidate.signalToNoise : isTaken;
 }
 
 /** Highest peaks by efficiency, and the highest by residue: long periods may stand low against their neighbours. */
@@ -157,13 +214,26 @@ function lookAtPeak(
   efficiency: number,
   accepted: readonly DipCandidate[],
 ): Verdicted | null {
+  const peak = search.peakAt(index);
+  return peak.depth > 0
+    ? lookAtPeriod(hunt, series, peak.periodDays, peak.durationDays, efficiency, accepted)
+    : null;
+}
+
+/** A period refined, weighed and judged. */
+function lookAtPeriod(
+  hunt: Hunt,
+  series: WeightedSeries,
+  periodDays: number,
+  durationDays: number,
+  efficiency: number,
+  accepted: readonly DipCandidate[],
+): Verdicted | null {
   const { settings } = hunt;
   const { range, spanDays, spacingDays } = settings;
-  const peak = search.peakAt(index);
-  if (!(peak.depth > 0)) return null;
-  const width = Math.max(2 * shortestDurationDays(range, peak.periodDays), peak.durationDays) / spanDays;
-  const bounds = durationBounds(range, peak.periodDays);
-  const first = refineNear(series, peak.periodDays, width, bounds);
+  const width = Math.max(2 * shortestDurationDays(range, periodDays), durationDays) / spanDays;
+  const bounds = durationBounds(range, periodDays);
+  const first = refineNear(series, periodDays, width, bounds);
   if (first === null) return null;
   // Once more with the trend taken without these dips.
   const clean = seriesFor(hunt, first.shape);

@@ -11,6 +11,8 @@ export interface DipData {
   readonly sigmas: Float64Array;
   /** Index of the table per point; each table has its own trend and noise. Absent: one table. */
   readonly segmentOf?: Uint16Array;
+  /** Neighbours that were averaged to one point, at most; 1 unless given. */
+  readonly averaged?: number;
 }
 
 export interface DipSearchOptions {

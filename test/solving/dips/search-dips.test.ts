@@ -33,12 +33,28 @@ describe('searchDips on simulated light curves with known truth', () => {
     // 27 d from day 1.9 in steps of 3.2 d: 8 events, all with data.
     expect(found.candidates[0]!.events).toHaveLength(8);
     expect(found.stages.length).toBeGreaterThanOrEqual(3);
-    expect(found.stages[0]!.peaks[0]!.kind).toBe('strongest');
+    expect(found.stages[0]!.peaks[0]!.kind).toBe('found');
   });
 
   it('gives the same bytes twice', () => {
     const data = lightCurve({ ...plan, dips: [near] });
     expect(JSON.stringify(searchDips(data))).toBe(JSON.stringify(searchDips(data)));
+  });
+
+  it('finds the period itself where a fraction of it stands higher above its neighbours', () => {
+    const deep: TrueDip = { periodDays: 7.31, midTimeDays: 3.3, durationDays: 0.15, depth: 0.004 };
+    const data = lightCurve({
+      ...plan,
+      spanDays: 200,
+      sigma: 4e-4,
+      trend: (time) => 0.002 * Math.sin((2 * Math.PI * time) / 13.7),
+      dips: [deep],
+    });
+    const { candidates } = searchDips(data, { maximumCompanions: 2 });
+    expect(candidates).toHaveLength(1);
+    const why = 'four standard errors, as stated by the search';
+    const { periodDays, periodSigmaDays } = candidates[0]!;
+    expectWithin(periodDays!, deep.periodDays, { abs: 4 * periodSigmaDays!, unit: 'd', why });
   });
 
   it('prefers the period to its half and its double, and lists them', () => {
