@@ -6,7 +6,7 @@ import { fileURLToPath } from 'node:url';
 import { runInNewContext } from 'node:vm';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import * as library from '../src/index.js';
-import type { Case, Quantity, Solved, VelocitySet } from '../src/index.js';
+import type { Case, Observations, Quantity, Solved, VelocitySet } from '../src/index.js';
 
 const ROOT = fileURLToPath(new URL('../', import.meta.url));
 const sample = (name: string): string => join(ROOT, 'data-samples', name);
@@ -110,11 +110,88 @@ describe('the library', () => {
     expect(JSON.parse(text)).toMatchObject({ schema: 'tugline/solution', target: 'Vellamo' });
   });
 
+  it('predicts light as geometry says: a small disc in the middle of a uniform star covers its share of the area', () => {
+    const out = new Float64Array(5);
+    library.transitFlux(0, 0.1, 0, 0, out);
+    expect(Math.abs(out[0]! - 0.99)).toBeLessThan(1e-14); // 1 - k^2; rounding alone
+  });
+
   it('throws the errors that it exports', async () => {
     await expect(library.readTables([library.requestFor(sample('none.csv'))])).rejects.toBeInstanceOf(
       library.InputDataError,
     );
     expect(() => library.solveKepler(1, 1.03)).toThrow(library.ModelDomainError);
     expect(() => library.caseFromTables(['a.csv'], { starMass: '-1' })).toThrow(library.UsageError);
+  });
+});
+
+describe('the library with velocities, light curves and mid-times together', () => {
+  let observations: Observations;
+  let lainehtar: Case;
+  let together: Solved;
+  const provenance = { version: '0.0.0', node: 'v20', command: ['lainehtar.mjs'] };
+
+  beforeAll(async () => {
+    lainehtar = await library.readCase(sample('lainehtar.yaml'));
+    observations = library.gatherObservations(await library.readAnyTables(lainehtar.tables));
+    const choices = { seed: 1, quick: true, permutations: 0, threads: 0, drawLimit: 1000, provenance };
+    together = await library.solveObservations(lainehtar, observations, choices);
+  });
+
+  it('tells the kinds of tables apart', () => {
+    expect(observations.velocities!.timesBjdTdb).toHaveLength(14 + 11); // counts of the mock block of the case
+    expect(observations.lightCurves.map(({ band }) => band)).toEqual(['broad', 'red', 'red']);
+    expect(observations.midTimes.map(({ used }) => used)).toEqual([12]);
+  });
+
+  it('finds orbit and size that the samples were simulated with (mock block of data-samples/lainehtar.yaml)', () => {
+    const truth = lainehtar.mock!.companions[0]!;
+    const { companions, photometry } = together.record;
+    expect(companions).toHaveLength(1);
+    const { elements, derived } = companions[0]!;
+    expectTruth(elements.period, truth.periodDays);
+    expectTruth(elements.semiAmplitude, truth.semiAmplitudeMps);
+    expectTruth(elements.radiusRatio!, 0.1063);
+    expectTruth(elements.impactParameter!, 0.34);
+    // 1 R_sun over 1 R_jup, both nominal equatorial: 6.957e8 m and 7.1492e7 m (IAU 2015 Resolution B3).
+    expectTruth(derived.radius!, (0.1063 * 0.99 * 6.957e8) / 7.1492e7);
+    expect(photometry!.starDensityTension).toBeLessThan(5);
+  });
+
+  it('writes the tables of a light curve: points, mid-times, and timings that it reads again', () => {
+    const { photometry, record } = together;
+    const rows = (text: string): string[] => text.trimEnd().split('\n').slice(1);
+    const points = record.photometry!.lightCurves.reduce((sum, { count }) => sum + count, 0);
+    expect(rows(library.lightCurveTable(photometry!))).toHaveLength(points);
+    const timed = record.photometry!.events.filter(({ midTime }) => midTime.value !== null).length;
+    expect(rows(library.midTimesTable(photometry!))).toHaveLength(12 + timed);
+    const text = library.timingsTable(together);
+    const table = library.parseAnyTable(text, 'timings.csv', library.requestFor('timings.csv'));
+    if (table.content !== 'mid-times') throw new Error(`read as ${table.content}`);
+    expect(table.used).toBe(timed);
+  });
+
+  it('finds the dips alone, and the ephemeris of mid-times alone', async () => {
+    const truth = lainehtar.mock!.companions[0]!.periodDays;
+    const [dip] = library.searchTables(lainehtar, observations.lightCurves.slice(0, 1)).search.candidates;
+    expect(Math.abs(dip!.periodDays! - truth)).toBeLessThan(5 * dip!.periodSigmaDays!);
+    const timing = library.solveTiming(observations.midTimes, {
+      target: 'Lainehtar',
+      periodDays: null,
+      renumber: false,
+      facts: { massRatio: null, scaledSemiMajorAxis: null, semiMajorAxisAu: null, properMotionMasPerYear: null, distanceParsec: null },
+      starMassSolar: null,
+      modulationDays: { low: null, high: null },
+      next: 3,
+      afterBjdTdb: null,
+      seed: 1,
+      provenance,
+    }); // prettier-ignore
+    expect(timing.record.preferred).toBe('linear');
+    expectTruth(timing.record.models[0]!.parameters.period!, truth);
+    const charts = await library.renderTimingCharts(timing);
+    expect(charts.map(({ name }) => name)).toEqual(['o-minus-c.png', 'o-minus-c.svg']);
+    const files = library.timingFiles(timing, charts).map(({ name }) => name);
+    expect(files).toEqual(expect.arrayContaining(['timing.json', 'o-minus-c.csv', 'report.md']));
   });
 });

@@ -63,7 +63,8 @@ export function programHelp(commands: readonly Command[]): string {
   return [
     'tugline COMMAND ...',
     '',
-    'Orbits and masses of companions from the radial velocities of their star.',
+    'Orbits, masses and radii of companions, from velocities, light curves and',
+    'mid-transit times of their star.',
     '',
     'Commands',
     ...commands.flatMap((command) => entry(`${command.name} ${command.operands}`, command.summary)),

@@ -29,8 +29,8 @@ export const INPUT_OPTIONS: readonly OptionSpec[] = [
 export const TARGET_OPTION: OptionSpec = option('target', 'Input', 'NAME', 'name of the target (default: from the case, else the first table)'); // prettier-ignore
 
 export const STAR_OPTIONS: readonly OptionSpec[] = [
-  option('star-mass', 'Model', '"M +- S"', 'mass of the star, solar masses, e.g. "0.94 +- 0.03" (default: unknown, no masses derived)'),
-  option('star-radius', 'Model', '"R +- S"', 'radius of the star, solar radii (default: unknown)'),
+  option('star-mass', 'Model', '"M +- S"', 'mass of the star, solar masses, e.g. "0.94 +- 0.03" (default: unknown, nothing derived that needs it)'),
+  option('star-radius', 'Model', '"R +- S"', 'radius of the star, solar radii (default: unknown, nothing derived that needs it)'),
   option('star-temperature', 'Model', '"T +- S"', 'effective temperature of the star, K (default: unknown)'),
 ]; // prettier-ignore
 
@@ -42,8 +42,8 @@ export const MODEL_OPTIONS: readonly OptionSpec[] = [
 
 export const SEARCH_OPTIONS: readonly OptionSpec[] = [
   option('shortest-period', 'Search', 'DAYS', 'shortest period to look at, days (default: 0.5)'),
-  option('longest-period', 'Search', 'DAYS', 'longest period to look at, days (default: 1.5 times the span of the data)'),
-  option('permutations', 'Search', 'N', 'shuffle the data N times for the false-alarm probability; 0 uses the analytic bound (default: 0)'),
+  option('longest-period', 'Search', 'DAYS', 'longest period to look at, days (default: 1.5 times the span of the velocities, half the span of the light curves)'),
+  option('permutations', 'Search', 'N', 'shuffle the velocities N times for the false-alarm probability; 0 uses the analytic bound (default: 0)'),
 ]; // prettier-ignore
 
 export const QUICK_OPTION: OptionSpec = option('quick', 'Uncertainty', null, 'no posterior: uncertainties from the curvature at the solution'); // prettier-ignore
@@ -52,7 +52,7 @@ export const SEED_OPTION: OptionSpec = option('seed', 'Uncertainty', 'N', 'seed 
 
 export const FORCE_OPTION: OptionSpec = option('force', 'Output', null, 'replace what an earlier run has written'); // prettier-ignore
 
-export const TIMINGS_OPTION: OptionSpec = option('timings-out', 'Output', 'FILE', 'also write the mid-time of each transit of the light curves, measured by itself, as a table that timing reads (default: none)'); // prettier-ignore
+export const TIMINGS_OPTION: OptionSpec = option('timings-out', 'Output', 'FILE', 'also write the mid-time of each transit of the light curves, measured by itself, as a table that timing reads; of several companions those of the first (default: none)'); // prettier-ignore
 
 export function outOption(help: string): OptionSpec {
   return option('out', 'Output', 'DIR', help);

@@ -1,4 +1,5 @@
 /** What a fit of interacting companions says, as part of a report, and its predictions as a table. */
+import { inJupiterMasses } from '../solving/timing/interaction-record.js';
 import type {
   InteractionCompanionRecord,
   InteractionFit,
@@ -61,6 +62,10 @@ function elementsTable({ companions }: InteractionFit): string {
   const rows: Row[] = [
     ['mass', ({ mass }) => formatQuantity(mass, 'markdown', { zeroBounded: true })],
     [
+      'the same in Jupiter masses',
+      ({ mass }) => formatQuantity(inJupiterMasses(mass), 'markdown', { zeroBounded: true }),
+    ],
+    [
       'mass ratio to the star (10⁻⁶)',
       ({ massRatio }) => formatQuantity(inMillionths(massRatio), 'markdown', { zeroBounded: true }),
     ],
@@ -82,7 +87,8 @@ function elementsTable({ companions }: InteractionFit): string {
   );
 }
 
-function inMillionths(ratio: Quantity): Quantity {
+/** A ratio in units of 10⁻⁶. */
+export function inMillionths(ratio: Quantity): Quantity {
   const scaled = (value: number | null): number | null => (value === null ? null : 1e6 * value);
   return {
     ...ratio,

@@ -89,6 +89,37 @@ export interface MidTimeRecord {
   readonly rms: number; // min
 }
 
+/** What the pull of the transiting companions at each other should do to their mid-times, from the masses of this solution. */
+export interface PredictedInteractionRecord {
+  /** Companions that were integrated together. */
+  readonly letters: readonly string[];
+  /** The two that are nearest to a resonance of first order, e.g. `2:1`, and how far from it; `null` where none is near. */
+  readonly nearResonance: {
+    readonly letters: readonly [string, string];
+    readonly ratio: string;
+    readonly distance: number;
+  } | null;
+  readonly superPeriod: number | null; // d
+  /** Half of the swing of O-C about a straight line over the span of the data, min, by letter. */
+  readonly predictedAmplitudeMinutes: Readonly<Record<string, Quantity>>;
+  /** Amplitude over a whole super-period by the near-resonant formula, min; letters near a resonance only. */
+  readonly superPeriodAmplitudeMinutes: Readonly<Record<string, number>>;
+  /** What an eccentricity of 0.01 more may add to or take from that amplitude, min. */
+  readonly eccentricityLeverMinutes: Readonly<Record<string, number>>;
+  /** Observed mid-transits against a straight line, and against the predicted variation on one; errors as stated. */
+  readonly comparisons: Readonly<
+    Record<
+      string,
+      {
+        readonly count: number;
+        readonly medianErrorMinutes: number;
+        readonly chiSquareLine: number;
+        readonly chiSquare: number;
+      }
+    >
+  >;
+}
+
 /** `photometry` of `solution.json`; present when light curves or mid-times were given. */
 export interface PhotometryRecord {
   readonly detections: readonly DetectionRecord[];
@@ -106,6 +137,8 @@ export interface PhotometryRecord {
   readonly starDensity: Quantity;
   readonly starDensityGiven: Quantity;
   readonly starDensityTension: number | null;
+  /** Present where two or more transiting companions have masses. */
+  readonly interaction?: PredictedInteractionRecord;
 }
 
 /** A light curve as it was fitted: the points of the fit, table order of time. Arrays of one length. */

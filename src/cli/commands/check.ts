@@ -48,7 +48,7 @@ export const check: Command = {
   options: INPUT_OPTIONS,
   examples: [
     ['tugline check data-samples/north.csv data-samples/south.csv', 'both tables of the demonstration'],
-    ['tugline check data-samples/south.csv --unit km/s --time-scale BJD_TDB', 'says what the header does not'],
+    ['tugline check data-samples/lainehtar-night-1.csv --exposure "60 s" --band red', 'a light curve; says what its header does not'],
     ['tugline check data-samples/north.csv --columns "time=1,velocity=2,velocity-error=3" --json', 'columns by number; the answer as JSON'],
   ], // prettier-ignore
   run,

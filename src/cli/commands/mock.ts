@@ -69,7 +69,6 @@ export const mock: Command = {
     ['tugline mock data-samples/vellamo.yaml --out simulated', 'writes simulated/north.csv and simulated/south.csv'],
     ['tugline mock data-samples/lainehtar.yaml --out simulated-transits', 'velocities, a survey light curve, two nights at the telescope and a table of mid-times'],
     ['tugline mock data-samples/vellamo.yaml --seed 7 --out simulated --force', 'the same nights with other weather and noise, over the old tables'],
-    ['tugline mock data-samples/vellamo.yaml --out simulated-for-script --json', 'prints what was written as JSON'],
   ], // prettier-ignore
   run,
 };

@@ -22,7 +22,7 @@ async function run(given: CommandArguments, terminal: Terminal): Promise<number>
   if (velocities === null && lightCurves.length === 0)
     throw new UsageError('mid-times alone hold no period that could be searched', {
       allowed: 'tables of velocities, light curves, or both',
-      hint: 'tugline solve fits the ephemeris of mid-times',
+      hint: 'tugline timing fits ephemerides to mid-times',
     });
   const found = await withProgress(terminal, given.isOn('quiet'), async (onProgress) => ({
     periods: velocities === null ? null : await periodsOf(theCase, velocities, { ...choices, onProgress }),
@@ -103,10 +103,10 @@ async function print(
 export const periods: Command = {
   name: 'periods',
   operands: 'CASE|TABLE...',
-  summary: 'periods in the data, their false-alarm probabilities and aliases',
+  summary: 'periods of velocities, dips in light curves; false alarms and aliases',
   description: [
-    'Lists the strongest periods with power, false-alarm probability and what they are seen from the strongest one, and the peaks of the window function. Zero points and drift are refitted at each frequency.',
-    'In light curves it looks for box-shaped dips, and lists those that noise does not make: period, mid-time, duration, depth, events, odd against even ones, and what stands at other phases. A dip that is seen once has no period. Periods up to half the span are tried there unless --longest-period says more; mass and radius of the star narrow the durations that are tried.',
+    'Lists the strongest periods of velocities with power, false-alarm probability and what they are seen from the strongest one, and the peaks of the window function. Zero points and drift are refitted at each frequency.',
+    'In light curves it looks for box-shaped dips, and lists those that noise does not make: period, mid-time, duration, depth, events, odd against even ones, and what stands at other phases. A dip that is seen once has no period. Periods up to half the span are tried there unless --longest-period says otherwise (at most the span); mass and radius of the star narrow the durations that are tried.',
   ],
   options: [
     ...INPUT_OPTIONS,
@@ -115,13 +115,13 @@ export const periods: Command = {
     ...MODEL_OPTIONS.filter((option) => option.name === 'drift'),
     ...SEARCH_OPTIONS,
     SEED_OPTION,
-    outOption('folder for the charts of the periodogram (default: no charts)'),
+    outOption('folder for the charts of the periodogram and of the dips (default: no charts)'),
     FORCE_OPTION,
   ],
   examples: [
     ['tugline periods data-samples/vellamo.yaml', 'the periods of a case'],
     ['tugline periods data-samples/north.csv --shortest-period 1.1 --longest-period 300', 'one table, periods from 1.1 to 300 days'],
-    ['tugline periods data-samples/vellamo.yaml --permutations 500 --out periodogram', 'false-alarm probabilities by shuffling, and the charts'],
+    ['tugline periods data-samples/lainehtar-survey.csv --star-mass 0.97 --star-radius 0.99 --out dips', 'dips in a survey light curve, and the charts'],
   ], // prettier-ignore
   run,
 };

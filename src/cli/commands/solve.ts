@@ -78,7 +78,7 @@ async function run(given: CommandArguments, terminal: Terminal): Promise<number>
 export const solve: Command = {
   name: 'solve',
   operands: 'CASE|TABLE...',
-  summary: 'the main job: companions, orbits, masses, and the dossier',
+  summary: 'the main job: companions, orbits, masses, radii, and the dossier',
   description: [
     'Finds the companions in velocities, light curves and mid-times, in whatever mix there is, fits everything together, derives masses and radii, samples the posterior, and writes a dossier: solution, report, tables and charts.',
     'Takes one case (.yaml) or any number of tables; - reads one table from standard input. Options win over the case. Ctrl-C while the posterior is sampled ends the sampling and gives the result so far, marked as interrupted.',
@@ -99,7 +99,7 @@ export const solve: Command = {
   examples: [
     ['tugline solve data-samples/vellamo.yaml', 'everything from the case; the dossier goes to dossier-vellamo'],
     ['tugline solve data-samples/north.csv data-samples/south.csv --star-mass "0.94 +- 0.03"', 'two bare tables and the mass of the star'],
-    ['tugline solve data-samples/vellamo.yaml --quick --json --out quick-look', 'a first look within seconds, as JSON for a script'],
+    ['tugline solve data-samples/lainehtar.yaml --quick --json --out quick-look', 'velocities, light curves and mid-times: a first look within seconds, as JSON for a script'],
   ], // prettier-ignore
   run,
 };

@@ -4,19 +4,21 @@ import { join } from 'node:path';
 import { UsageError } from '../../errors.js';
 import type { Observations } from '../../observations/photometry-types.js';
 import type { Case } from '../../observations/types.js';
+import type { CompanionTables } from '../../solving/timing/solve-timing-system.js';
 import type { TimingChoices } from '../../solving/timing/solve-timing.js';
 import type { CommandArguments } from '../command-arguments.js';
 import type { Command } from '../command.js';
 import {
-  FORCE_OPTION, INPUT_OPTIONS, outOption, SEED_OPTION, STAR_OPTIONS, TARGET_OPTION, type OptionSpec,
+  FORCE_OPTION, INPUT_OPTIONS, outOption, QUICK_OPTION, SEED_OPTION, STAR_OPTIONS, TARGET_OPTION, type OptionSpec,
 } from '../options.js'; // prettier-ignore
 import { withProgress } from '../progress.js';
 import { seedOf } from '../solving-options.js';
 import type { Terminal } from '../terminal.js';
 import { programVersion } from '../version.js';
+import { refuseOptionsOfOne, timingOfSeveral } from './timing-of-several.js';
 
 const TIMING_OPTIONS: readonly OptionSpec[] = [
-  { name: 'companion', group: 'Input', value: 'LETTER', help: 'whose mid-times, where a case has those of several companions (default: the only one)' },
+  { name: 'companion', group: 'Input', value: 'LETTER', help: 'whose mid-times, where a case has those of several companions (default: all, and how they pull at each other)' },
   { name: 'period', group: 'Model', value: 'DAYS', help: 'about the period, days, good to 2 %: counts the cycles of tables without them (default: from the spacings)' },
   { name: 'renumber', group: 'Model', value: null, help: 'count the cycles from the times, whatever the tables say' },
   { name: 'mass-ratio', group: 'Model', value: 'Q', help: 'mass of the companion over that of the star, for the tidal quality factor (default: unknown)' },
@@ -61,8 +63,12 @@ function timingChoices(given: CommandArguments, theCase: Case): TimingChoices {
   };
 }
 
-/** The tables of one companion. @throws UsageError when there are none, or those of several and none is named */
-function tablesOf({ midTimes }: Observations, letter: string | null): Observations['midTimes'] {
+/**
+ * The tables by companion, in the order of the case: all of them, or those of the letter alone.
+ *
+ * @throws UsageError when there are none, or the letter has none, or some of several are not named
+ */
+function companionsOf({ midTimes }: Observations, letter: string | null): CompanionTables[] {
   if (midTimes.length === 0)
     throw new UsageError('there are no mid-times among the tables', {
       allowed: 'tables with a column of mid-times and one of their errors',
@@ -70,19 +76,24 @@ function tablesOf({ midTimes }: Observations, letter: string | null): Observatio
     });
   const letters = [...new Set(midTimes.map(({ companion }) => companion ?? ''))];
   const named = letters.filter((name) => name !== '');
+  const of = (name: string): CompanionTables => ({
+    letter: name,
+    tables: midTimes.filter(({ companion }) => (companion ?? '') === name),
+  });
   if (letter === null) {
-    if (letters.length === 1) return midTimes;
+    if (letters.length === 1 || named.length === letters.length) return letters.map(of);
     throw new UsageError(
-      `there are mid-times of several companions: ${letters.map((name) => (name === '' ? 'one that is not named' : name)).join(', ')}`,
+      `there are mid-times of companion ${named.join(', ')} and of one that is not named (${of('')
+        .tables.map(({ path }) => `"${path}"`)
+        .join(', ')})`,
       {
-        allowed: 'those of one companion at a time',
-        hint: `--companion ${named[0] ?? 'b'}`,
+        allowed: 'those of one companion, or a letter for every table',
+        hint: `companion: LETTER beside each table of the case, or --companion ${named[0] ?? 'b'}`,
       },
     );
   }
-  const own = midTimes.filter(({ companion }) => companion === letter);
-  if (own.length > 0) return own;
-  if (named.length === 0) return midTimes;
+  if (named.length === 0) return [{ letter, tables: midTimes }];
+  if (named.includes(letter)) return [of(letter)];
   throw new UsageError(`no table has mid-times of a companion "${letter}"`, { allowed: named.join(', ') });
 }
 
@@ -93,7 +104,9 @@ async function run(given: CommandArguments, terminal: Terminal): Promise<number>
   const theCase = await requestedCase(given);
   const choices = timingChoices(given, theCase);
   const observations = await readObservations(theCase, given, terminal);
-  const tables = tablesOf(observations, given.text('companion'));
+  const companions = companionsOf(observations, given.text('companion'));
+  const letters = companions.map(({ letter }) => letter);
+  if (companions.length > 1) refuseOptionsOfOne(given, letters);
   const unused = (observations.velocities === null ? 0 : 1) + observations.lightCurves.length;
   if (unused > 0 && !given.isOn('quiet'))
     terminal.note(
@@ -101,9 +114,15 @@ async function run(given: CommandArguments, terminal: Terminal): Promise<number>
     );
   const folder = given.folder() ?? `timing-${fileNameFrom(theCase.target, 'target')}`;
 
+  if (companions.length > 1) return timingOfSeveral(given, terminal, theCase, companions, choices, folder);
+  if (given.isOn('quick') && !given.isOn('quiet'))
+    terminal.note(
+      `${terminal.paint('caution', 'note:', 'note')} --quick changes nothing: the mid-times are those of one companion`,
+    );
+
   const solved = await withProgress(terminal, given.isOn('quiet'), async (onProgress) => {
     const { solveTiming } = await import('../../solving/timing/solve-timing.js');
-    const solution = solveTiming(tables, { ...choices, onProgress });
+    const solution = solveTiming(companions[0]!.tables, { ...choices, onProgress });
     onProgress('drawing charts', 0.95);
     const { renderTimingCharts } = await import('../../dossier/charts/render-timing.js');
     const { timingFiles } = await import('../../dossier/timing/timing-files.js');
@@ -126,13 +145,18 @@ export const timing: Command = {
   summary: 'ephemeris, changes of the period and predictions from mid-times',
   description: [
     'Counts or checks the cycles of mid-transit (and mid-occultation) times, fits a constant period, a changing one, a sinusoid and a precessing orbit, says which of them the times ask for, and predicts what comes next.',
-    'Writes a folder: solution, report, table of O - C, chart.',
+    'Where a case has mid-times of two to five companions, each gets its ephemeris, and orbits that pull at each other are integrated and fitted to all of them: masses and eccentricities follow.',
+    'Writes a folder: solution, report, tables of O - C, charts.',
   ],
   options: [
     ...INPUT_OPTIONS.filter(({ name }) => READING_OPTIONS.includes(name)),
     TARGET_OPTION,
     ...TIMING_OPTIONS,
     ...STAR_OPTIONS.filter(({ name }) => name === 'star-mass'),
+    {
+      ...QUICK_OPTION,
+      help: 'of several companions: masses without posterior, their uncertainties from the curvature at the solution',
+    },
     SEED_OPTION,
     outOption('folder of the files (default: timing- and the name of the target)'),
     FORCE_OPTION,

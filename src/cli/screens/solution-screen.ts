@@ -27,6 +27,7 @@ function row(name: string, quantity: Quantity, choices: QuantityChoices = {}): R
 }
 
 function evidenceRows({ evidence }: CompanionRecord): Row[] {
+  if (evidence.deltaBic === 0) return [['evidence', evidence.falseAlarmMethod]];
   const shape = evidence.eccentricity;
   const eccentric =
     shape === null

@@ -19,7 +19,7 @@ const MINUTES_PER_DAY = 1440;
 const HEIGHT_MM = 84;
 const DATA_LABEL = 'observed';
 const MODEL_LABEL = 'interacting orbits';
-const BAND_LABEL = '1σ of the prediction';
+const BAND_LABEL = '1 σ of the prediction';
 const MODEL_LINE = { colour: MODEL_COLOUR, widthPx: 1 };
 
 /**

@@ -2,8 +2,8 @@
 import type { PhotometryRecord, TransitEventRecord } from '../../solving/transit-types.js';
 import type { Quantity } from '../../solving/types.js';
 import { escapeMarkdown, markdownCode } from '../escape.js';
-import { formatQuantity, significant } from '../numbers.js';
-import { capitalised, counted } from '../titles.js';
+import { fixedPlaces, formatQuantity, significant, typographicMinus } from '../numbers.js';
+import { capitalised, counted, listed } from '../titles.js';
 import { chartBlocks, markdownTable, type ReportSection } from './section.js';
 
 const MOST_ROWS = 40;
@@ -71,11 +71,40 @@ function tableBlocks({ midTimes }: PhotometryRecord): string[] {
   ];
 }
 
+/** What the masses of this solution say of the pull of the companions at each other. */
+function pullBlocks({ interaction }: PhotometryRecord): string[] {
+  if (interaction === undefined) return [];
+  const { letters, nearResonance, superPeriod, predictedAmplitudeMinutes, comparisons } = interaction;
+  const shifts = letters.map((letter) => {
+    const amplitude = predictedAmplitudeMinutes[letter]!;
+    const whole = interaction.superPeriodAmplitudeMinutes[letter];
+    return `${escapeMarkdown(letter)} ${formatQuantity(amplitude, 'markdown', { zeroBounded: true })}${whole === undefined ? '' : ` (${significant(whole, 2)} min over a whole super-period; ${significant(interaction.eccentricityLeverMinutes[letter]!, 2)} min more or less for 0.01 in eccentricity)`}`;
+  });
+  const resonance =
+    nearResonance === null || superPeriod === null
+      ? 'no two of them are near a resonance of first order'
+      : `${listed(nearResonance.letters.map(escapeMarkdown))} are ${significant(Math.abs(100 * nearResonance.distance), 2)} % ${nearResonance.distance > 0 ? 'outside' : 'inside'} the ${nearResonance.ratio} resonance, with a super-period of ${significant(superPeriod, 4)} d`;
+  const seen = letters.flatMap((letter) => {
+    const comparison = comparisons[letter];
+    if (comparison === undefined) return [];
+    const { count, chiSquareLine, chiSquare, medianErrorMinutes } = comparison;
+    return [
+      `the ${count} mid-transits of ${escapeMarkdown(letter)} (usual error ${significant(medianErrorMinutes, 2)} min) have χ² ${fixedPlaces(chiSquareLine, 1)} about a straight line and ${fixedPlaces(chiSquare, 1)} with the predicted variation`,
+    ];
+  });
+  return [
+    typographicMinus(
+      `This solution has the companions on undisturbed orbits. With its masses and eccentricities the pull of ${listed(letters.map(escapeMarkdown))} at each other should move mid-transits, to either side of an even clock within these data, by: ${shifts.join('; ')}; ${resonance}.`,
+    ),
+    ...(seen.length === 0 ? [] : [`${capitalised(seen.join('; '))}; errors as stated.`]),
+  ];
+}
+
 export const midTimes: ReportSection = {
   heading: 'Mid-times',
   blocks: ({ record: { photometry } }, context) => {
     if (photometry === undefined) return [];
-    const body = [...eventBlocks(photometry), ...tableBlocks(photometry)];
+    const body = [...eventBlocks(photometry), ...tableBlocks(photometry), ...pullBlocks(photometry)];
     return body.length === 0 ? [] : [...chartBlocks(context, /^mid-times-/), ...body];
   },
 };

@@ -1,8 +1,10 @@
 /** The quantities of mid-times in words, in the order in which they are shown. */
 import type { TimingModelName } from '../../solving/timing/model-forms.js';
+import type { TimingSystemRecord } from '../../solving/timing/system-types.js';
 import type { TimingModelRecord, TimingParameterKey } from '../../solving/timing/types.js';
 import type { Quantity } from '../../solving/types.js';
 import { formatQuantity, significant } from '../numbers.js';
+import { listed } from '../titles.js';
 
 export const TIMING_TITLES: readonly (readonly [key: TimingParameterKey, words: string])[] = [
   ['time', 'mid-transit at the reference cycle'],
@@ -36,6 +38,16 @@ export const MODEL_WORDS: Readonly<Record<TimingModelName, string>> = {
   sinusoidal: 'the times swing about an even clock',
   precessing: 'the line of apsides turns',
 };
+
+/** What mid-times of several companions say, on a line. */
+export function systemWords({ companions, interaction }: TimingSystemRecord): string {
+  const letters = listed(companions.map(({ letter }) => letter));
+  if (interaction === null) return `ephemerides of ${letters}`;
+  if (!interaction.usable) return `ephemerides of ${letters}; their orbits could not be fitted together`;
+  return interaction.needed
+    ? `${letters} pull at each other`
+    : `the mid-times of ${letters} do not show a pull at each other`;
+}
 
 /** The quantities that a model has, with their words. */
 export function timingQuantities(

@@ -4,6 +4,8 @@ import { medianInPlace, robustScatterInPlace } from './order-statistics.js';
 /** Level and scatter are taken over blocks of the grid, since both change with the period. */
 const MOST_BLOCKS = 40;
 const FEWEST_IN_BLOCK = 200;
+/** A block scatters at least by this share of what blocks usually do. */
+const LEAST_SCATTER = 0.1;
 
 /**
  * (residue - level)/scatter, level the running median and scatter 1.48 times the running median absolute deviation over
@@ -22,6 +24,9 @@ export function detectionEfficiency(signalResidue: Float64Array): Float64Array {
     for (let i = 0; i < part.length; i++) part[i]! -= level;
     scatters[b] = robustScatterInPlace(part);
   }
+  // A block in which nearly nothing varies would make a mountain of a grain.
+  const least = LEAST_SCATTER * medianInPlace(Float64Array.from(scatters));
+  for (let b = 0; b < blocks; b++) scatters[b] = Math.max(scatters[b]!, least);
   const efficiency = new Float64Array(n);
   for (let j = 0; j < n; j++) {
     const position = Math.min(Math.max(((j + 0.5) * blocks) / n - 0.5, 0), blocks - 1);

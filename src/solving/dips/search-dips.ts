@@ -194,10 +194,17 @@ function lookForPeriod(
   return strongestAlone(hunt, best) ?? best;
 }
 
-/** Accepted before not accepted, then the more significant: a fraction of a period has higher neighbours to stand out of, not more signal. */
+/** A later peak must have this much more signal: small differences are those of noise and of few points in a dip. */
+const MORE_SIGNAL = 1.3;
+
+/**
+ * Accepted before not accepted; among the accepted the one that stands out most of the spectrum, unless a later one has far more
+ * signal: a fraction of a period may have lower neighbours to stand out of.
+ */
 function isBetter(a: Verdicted, b: Verdicted): boolean {
   const [isTaken, wasTaken] = [a.verdict.kind === 'accepted', b.verdict.kind === 'accepted'];
-  return isTaken === wasTaken ? a.candidate.signalToNoise > b.candidate.signalToNoise : isTaken;
+  const more = isTaken && wasTaken ? MORE_SIGNAL : 1;
+  return isTaken === wasTaken ? a.candidate.signalToNoise > more * b.candidate.signalToNoise : isTaken;
 }
 
 /** Highest peaks by efficiency, and the highest by residue: long periods may stand low against their neighbours. */

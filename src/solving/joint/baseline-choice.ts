@@ -1,6 +1,7 @@
 /** Which terms a baseline needs beside its constant: added one at a time while the evidence pays for them. */
 import { prepareCurve, type PreparedCurve } from './prepare-curve.js';
 import type { Ephemeris } from './curve-windows.js';
+import { airmassLabel } from './event-dips.js';
 
 /** A term must lower the BIC by this much. */
 const MARGIN = 6;
@@ -9,8 +10,11 @@ const MOST_TERMS = 4;
 /** A regressor that is this closely tied to time or to another one is that one. */
 const TWIN = 0.999;
 
+/** What a choice of terms is judged by: the smaller the better, in the units of a BIC. */
+export type BaselineScore = (curve: PreparedCurve) => number;
+
 /** BIC of one curve with its present design: transits held, one common scale of the errors free. */
-function bicOf(curve: PreparedCurve, transit: Float64Array): number {
+export function bicWithTransit(curve: PreparedCurve, transit: Float64Array): number {
   const { data } = curve;
   let chiSquare = 0;
   let parameters = 0;
@@ -76,28 +80,28 @@ function correlation(a: Float64Array, b: Float64Array): number {
 }
 
 /**
- * Terms of the baseline of a curve for which the table leaves the choice to the evidence.
- *
- * @param transit - relative flux of the present model at the points of the curve
+ * Terms of the baseline of a curve for which the table leaves the choice to the evidence. The airmass of a single night is always
+ * among them: a transit can take its curvature for its own, so that the evidence does not tell, and the depth would be wrong.
  */
 export function chooseBaseline(
   curve: PreparedCurve,
   epochBjdTdb: number,
   ephemerides: readonly Ephemeris[],
-  transit: Float64Array,
+  score: BaselineScore,
 ): string[] {
-  const terms: string[] = [];
-  const withTerms = (list: readonly string[]): number =>
-    bicOf(prepareCurve(curve.table, epochBjdTdb, ephemerides, curve.data.band, list)!, transit);
-  let bic = withTerms(terms);
   const open = new Set(candidates(curve));
+  const airmass = airmassLabel(curve.table);
+  const terms: string[] = airmass !== null && open.delete(airmass) ? [airmass] : [];
+  const withTerms = (list: readonly string[]): number =>
+    score(prepareCurve(curve.table, epochBjdTdb, ephemerides, curve.data.band, list)!);
+  let bic = withTerms(terms);
   while (terms.length < MOST_TERMS) {
     const tried = [...open]
       .filter((term) => term !== 'time^2' || terms.includes('time'))
       .map((term) => ({ term, bic: withTerms([...terms, term]) }))
       .sort((a, b) => a.bic - b.bic);
     const [best] = tried;
-    if (best === undefined || best.bic > bic - MARGIN) break;
+    if (best === undefined || !(best.bic < bic - MARGIN)) break;
     terms.push(best.term);
     open.delete(best.term);
     bic = best.bic;

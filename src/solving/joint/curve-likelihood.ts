@@ -12,7 +12,9 @@ import type { CurveData, CurveSegment } from './joint-data.js';
 import { CorrelatedNoise, whiteNoise, type SegmentNoise } from './segment-noise.js';
 
 /** The baseline's coefficients are confined to this many times the scatter of the segment, which is no confinement. */
-const BASELINE_WIDTH = 100;
+export const BASELINE_WIDTH = 100;
+/** Averages over exposures are right to this share of the error of the mean of all points. */
+const EXPOSURE_ERROR = 0.01;
 
 /** Parameters of one evaluation; arrays are read only. */
 export interface CurvePoint {
@@ -66,9 +68,10 @@ export class CurveLikelihood {
     this.curve = curve;
     const companions = transits.length;
     const { timesDays, exposureDays } = curve;
+    const errorBound = (EXPOSURE_ERROR * curve.typicalSigma) / Math.sqrt(timesDays.length);
     this.kernels = Array.from(
       { length: companions },
-      () => new LightCurveKernel({ timesDays, exposureDays, starRadiusLightDays }),
+      () => new LightCurveKernel({ timesDays, exposureDays, starRadiusLightDays, errorBound }),
     );
     this.#transits = transits;
     this.byCoordinate = new Float64Array(TRANSIT_COORDINATES * companions);

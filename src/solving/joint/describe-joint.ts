@@ -1,6 +1,7 @@
 /** The joint solution as it is recorded: what velocities say, overlaid with what transits and mid-times add. */
 import { rootMeanSquare } from '../../numerics/summary.js';
 import type { Observations } from '../../observations/photometry-types.js';
+import type { CompanionChoice } from '../../observations/types.js';
 import { derivedQuantities } from '../companion-record.js';
 import { describeSolution, samplingWarnings, starQuantity, type Making } from '../describe-solution.js';
 import { absoluteElements } from '../elements-report.js';
@@ -18,6 +19,7 @@ import { emptyVelocitySet, jointSampled, type JointSampled } from './joint-sampl
 import { jointAssumptions, jointWarnings } from './joint-words.js';
 import { photometryArrays } from './photometry-arrays.js';
 import { photometryRecord, residualsOf } from './photometry-record.js';
+import { predictedInteraction } from './predicted-interaction.js';
 import { transitDerived, transitElements } from './transit-quantities.js';
 
 /** Quantities that only a pull on the star tells. */
@@ -61,7 +63,12 @@ export function describeJoint(result: JointResult, making: Making): Solved {
   const events = timeEvents(settled.fit, settled.prepared.curves);
   // Timing the events has left the curves as they were; the density itself is put back to the maximum.
   settled.fit.density.evaluate(settled.fit.maximum.position, new Float64Array(settled.fit.density.size));
-  const photometry = photometryRecord(theCase, settled, joint, events, search, epochBjdTdb);
+  const arrays = photometryArrays(settled, joint, events, search, observations.lightCurves, epochBjdTdb);
+  const interaction = predictedInteraction(result, joint, arrays.midTimes);
+  const photometry = {
+    ...photometryRecord(theCase, settled, joint, events, search, epochBjdTdb),
+    ...(interaction === null ? {} : { interaction }),
+  };
   const record: SolutionRecord = {
     schema: 'tugline/solution',
     version: 1,
@@ -120,7 +127,7 @@ export function describeJoint(result: JointResult, making: Making): Solved {
     },
     posterior:
       sample.record === null ? null : jointPosteriorDraws(sample, readings, joint.best, joint.references),
-    photometry: photometryArrays(settled, joint, events, search, observations.lightCurves, epochBjdTdb),
+    photometry: arrays,
   };
 }
 
@@ -148,12 +155,20 @@ function ofVelocities(result: JointResult, joint: JointSampled, making: Making):
   };
   const sampled = { ...values, problem, point: own };
   return describeSolution(
-    theCase,
+    { ...theCase, companions: listedAs(result, plan.companions.length) },
     observations.velocities!,
     { ...settled, best: { plan, fit } },
     sampled,
     making,
   );
+}
+
+/** The companions of the velocities by the letters that they have in the joint solution. */
+function listedAs({ settled }: JointResult, count: number): readonly CompanionChoice[] {
+  return settled.companions.slice(0, count).map(({ letter, circular, choice }) => ({
+    ...(choice ?? { circular, elements: {}, inclinationDeg: null }),
+    letter,
+  }));
 }
 
 function companionOf(

@@ -14,9 +14,9 @@ const LEAST_GAIN = 30;
 /** A transit takes at most this share of a night. */
 const LONGEST_OF_NIGHT = 0.8;
 
-function airmassOf(table: LightCurveTable): Float64Array | null {
-  for (const [label, values] of table.regressors) if (/air\s*-?mass/i.test(label)) return values;
-  return null;
+/** Label of the regressor that is the airmass, or `null`. */
+export function airmassLabel({ regressors }: LightCurveTable): string | null {
+  return [...regressors.keys()].find((label) => /air\s*-?mass/i.test(label)) ?? null;
 }
 
 function runOf(
@@ -26,7 +26,8 @@ function runOf(
   to: number,
   midTimeDays: number,
 ): DipRun {
-  const airmass = airmassOf(table);
+  const label = airmassLabel(table);
+  const airmass = label === null ? null : table.regressors.get(label)!;
   return {
     timesDays: times.subarray(from, to),
     flux: table.flux.subarray(from, to),

@@ -145,9 +145,9 @@ function crossing(value: (x: number) => number, top: number, end: number, level:
   let step = Math.abs(end) / 256;
   let outside: number;
   for (;;) {
-    outside = inside + sign * step;
-    if (Math.abs(outside) > Math.abs(end) * 1.001) return null;
+    outside = sign * Math.min(sign * (inside + sign * step), Math.abs(end));
     if (value(outside) < level) break;
+    if (outside === end) return null;
     inside = outside;
     step *= 1.5;
   }

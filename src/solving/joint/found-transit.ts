@@ -1,4 +1,5 @@
 /** A transiting companion as it is known before the joint fit. */
+import type { JoinedDipData } from '../dips/dip-data.js';
 import type { DipCandidate, DipSearch } from '../dips/types.js';
 import type { NumberedTimes } from '../timing/timing-data.js';
 import type { Ephemeris } from './curve-windows.js';
@@ -39,41 +40,65 @@ export interface TransitSearch {
   readonly sets: readonly NumberedSet[];
   /** `null` where no light curve is long enough to be searched. */
   readonly dips: DipSearch | null;
-  /** Tables that were searched, and per point of the search the table it is from. */
+  /** Tables that were searched, and what their points were made of. */
   readonly surveyed: readonly string[];
-  readonly tableOf: Uint16Array;
+  readonly searched: JoinedDipData | null;
   readonly notices: readonly { readonly code: string; readonly message: string }[];
 }
 
-/** Straight line through numbered mid-times by least squares; errors grow with the scatter where that exceeds them. */
+/**
+ * Straight line through numbered mid-times by least squares; errors grow with the scatter where that exceeds them. Beside
+ * transits, occultations tell the period alone: on an eccentric orbit they do not come half a period later.
+ */
 export function straightLine(times: NumberedTimes, shiftDays: number): LinearEphemeris {
   const { count, timesDays, sigmasDays, cycles, isOccultation } = times;
-  let [w, wx, wy] = [0, 0, 0];
-  const x = (i: number): number => cycles[i]! + 0.5 * isOccultation[i]!;
-  for (let i = 0; i < count; i++) {
-    const weight = sigmasDays[i]! ** -2;
-    w += weight;
-    wx += weight * x(i);
-    wy += weight * timesDays[i]!;
-  }
-  const meanX = wx / w;
-  const meanY = wy / w;
-  let [xx, xy] = [0, 0];
-  for (let i = 0; i < count; i++) {
-    const weight = sigmasDays[i]! ** -2;
-    xx += weight * (x(i) - meanX) ** 2;
-    xy += weight * (x(i) - meanX) * (timesDays[i]! - meanY);
-  }
-  const periodDays = xy / xx;
-  let chiSquare = 0;
-  for (let i = 0; i < count; i++)
-    chiSquare += ((timesDays[i]! - meanY - periodDays * (x(i) - meanX)) / sigmasDays[i]!) ** 2;
-  const inflation = Math.sqrt(Math.max(1, chiSquare / Math.max(1, count - 2)));
+  const whole = Float64Array.from(cycles);
+  const late = whole.map((cycle, i) => cycle + 0.5 * isOccultation[i]!);
+  const rows = Array.from({ length: count }, (_, i) => i);
+  const transits = rows.filter((i) => isOccultation[i] === 0);
+  const occultations = rows.filter((i) => isOccultation[i] === 1);
+  const apart = [transits, occultations].map((own) => moments(whole, timesDays, sigmasDays, own));
+  const isApart = transits.length > 0 && occultations.length > 0 && apart[0]!.xx + apart[1]!.xx > 0;
+  const groups = isApart ? apart : [moments(late, timesDays, sigmasDays, rows)];
+  const xx = groups.reduce((sum, own) => sum + own.xx, 0);
+  const periodDays = groups.reduce((sum, own) => sum + own.xy, 0) / xx;
+  const chiSquare = groups.reduce(
+    (sum, own) => sum + own.yy - periodDays * (2 * own.xy - periodDays * own.xx),
+    0,
+  );
+  const inflation = Math.sqrt(Math.max(1, chiSquare / Math.max(1, count - 1 - groups.length)));
+  const { meanX, meanY, weight } = groups[0]!;
   return {
     timeDays: meanY - periodDays * meanX + shiftDays,
     periodDays,
     middleCycle: Math.round(meanX),
-    middleSigmaDays: inflation / Math.sqrt(w),
+    middleSigmaDays: inflation / Math.sqrt(weight),
     periodSigmaDays: inflation / Math.sqrt(xx),
+  };
+}
+
+interface Moments {
+  readonly weight: number;
+  readonly meanX: number;
+  readonly meanY: number;
+  /** About the means. */
+  readonly xx: number;
+  readonly xy: number;
+  readonly yy: number;
+}
+
+function moments(x: Float64Array, y: Float64Array, sigmas: Float64Array, rows: readonly number[]): Moments {
+  const sum = (term: (i: number) => number): number =>
+    rows.reduce((total, i) => total + term(i) / (sigmas[i]! * sigmas[i]!), 0);
+  const weight = sum(() => 1);
+  const meanX = sum((i) => x[i]!) / weight;
+  const meanY = sum((i) => y[i]!) / weight;
+  return {
+    weight,
+    meanX,
+    meanY,
+    xx: sum((i) => (x[i]! - meanX) ** 2),
+    xy: sum((i) => (x[i]! - meanX) * (y[i]! - meanY)),
+    yy: sum((i) => (y[i]! - meanY) ** 2),
   };
 }

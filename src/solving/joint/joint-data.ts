@@ -24,7 +24,7 @@ export interface CurveData {
   readonly sigmas: Float64Array;
   /** Exposures in each point: several where points were averaged. The extra scatter of a point falls with their root. */
   readonly averaged: Float64Array;
-  /** From the beginning of the first exposure of a point to the end of its last. */
+  /** Length of an exposure; of averaged points the one with their spread in time. */
   readonly exposureDays: number;
   readonly band: number;
   readonly segments: readonly CurveSegment[];

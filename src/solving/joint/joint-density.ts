@@ -138,14 +138,22 @@ export class JointDensity implements SampledDensity {
       const c = likelihood.data.companion;
       const base = index.companion(c);
       const { transits } = this.recipe.companions[c]!;
+      const k = natural[base + SHAPE]!;
+      const h = natural[base + SHAPE + 1]!;
+      // Distances at the two conjunctions together are 2 a (1 - e^2)/(1 - h^2).
+      const front = 1 - h * h;
       const lightDays = transits
-        ? 2 * Math.exp(transit[c * TRANSIT_COORDINATES + 6]!) * this.recipe.starRadiusLightDays
+        ? (2 *
+            Math.exp(transit[c * TRANSIT_COORDINATES + 6]!) *
+            this.recipe.starRadiusLightDays *
+            (front - k * k)) /
+          front
         : 0;
       sum += likelihood.evaluate(
         natural[base + LOG_PERIOD]!,
         natural[base + CONJUNCTION]!,
-        natural[base + SHAPE]!,
-        natural[base + SHAPE + 1]!,
+        k,
+        h,
         natural[index.midTimeJitter(i)]!,
         lightDays,
       );
@@ -154,7 +162,11 @@ export class JointDensity implements SampledDensity {
       byNatural[base + SHAPE]! += likelihood.byK;
       byNatural[base + SHAPE + 1]! += likelihood.byH;
       byNatural[index.midTimeJitter(i)] = likelihood.byJitter;
-      if (transits) byTransit[c * TRANSIT_COORDINATES + 6]! += likelihood.byLight * lightDays;
+      if (!transits) continue;
+      const slope = likelihood.byLight * lightDays;
+      byTransit[c * TRANSIT_COORDINATES + 6]! += slope;
+      byNatural[base + SHAPE]! -= (2 * k * slope) / (front - k * k);
+      byNatural[base + SHAPE + 1]! -= (2 * h * k * k * slope) / ((front - k * k) * front);
     }
     return sum;
   }

@@ -9,6 +9,8 @@ import { RADIUS_RATIO } from './natural.js';
 const SHAPE_PARAMETERS = 3;
 /** Those of its ephemeris. */
 const EPHEMERIS_PARAMETERS = 2;
+/** Method of the evidence where the table of mid-times is taken at its word. */
+export const MID_TIMES_ONLY = 'none: its mid-times are taken as those of transits';
 /** A companion this small leaves no trace. */
 const NO_RADIUS = 1e-4;
 
@@ -23,15 +25,19 @@ export function jointEvidence(result: JointResult, index: number, ofVelocities: 
   const parameters =
     SHAPE_PARAMETERS + (candidate === null ? 0 : EPHEMERIS_PARAMETERS) + (occultation ? 1 : 0);
   const other = settled.otherShapes[index] ?? null;
+  // Without an ephemeris the dip may lie anywhere: as many places as there are points.
+  const trials = companion.found?.how === 'one event' ? dataCount(settled.fit.recipe) : 1;
   return {
     deltaLogLikelihood,
     deltaBic: 2 * deltaLogLikelihood - parameters * Math.log(dataCount(settled.fit.recipe)),
     falseAlarmProbability:
       candidate?.falseAlarmProbability ??
-      regularisedGammaQ(0.5 * SHAPE_PARAMETERS, Math.max(0, deltaLogLikelihood)),
+      Math.min(1, trials * regularisedGammaQ(0.5 * SHAPE_PARAMETERS, Math.max(0, deltaLogLikelihood))),
     falseAlarmMethod:
       candidate === null
-        ? 'chance that noise gains as much at a known ephemeris (χ² with 3 degrees of freedom)'
+        ? trials > 1
+          ? 'chance that white noise gains as much anywhere in the light curve (χ² with 3 degrees of freedom, as many trials as points)'
+          : 'chance that noise gains as much at a known ephemeris (χ² with 3 degrees of freedom)'
         : 'search for dips in the light curves: trials of the search times the tail of the folded signal to noise, red noise counted',
     marginal: ofVelocities?.marginal ?? null,
     eccentricity:
@@ -70,12 +76,13 @@ function withoutTransit({ settled }: JointResult, index: number): number {
   return fitFrom({ ...recipe, companions }, start)?.maximum.value ?? -Infinity;
 }
 
+/** Mid-times say when, not whether. */
 function withoutData(): Evidence {
   return {
     deltaLogLikelihood: 0,
     deltaBic: 0,
     falseAlarmProbability: 1,
-    falseAlarmMethod: 'known from its mid-times alone',
+    falseAlarmMethod: MID_TIMES_ONLY,
     marginal: null,
     eccentricity: null,
   };

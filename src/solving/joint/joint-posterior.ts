@@ -71,7 +71,7 @@ export function drawJointCurvature(settled: SettledJoint, seed: number): JointSa
   const density = new JointDensity(settled.fit.recipe, 'all');
   const { size } = density;
   const centre = maximise(density, density.coordinates.position(settled.fit.natural), BRIEF).position;
-  const factor = curvatureOfDensity(density, centre);
+  const factor = tamed(curvatureOfDensity(density, centre), density);
   const isUsable = choleskyInPlace(factor, size);
   const random = RandomStream.fromSeed(seed, STREAM);
   const positions: number[] = [];
@@ -94,4 +94,21 @@ export function drawJointCurvature(settled: SettledJoint, seed: number): JointSa
     drawsPerChain: count,
     record: null,
   };
+}
+
+/** Coordinates of extra scatter and impact parameters near zero are flat there and bend later: their curvature is not believed beyond this. */
+const WIDEST_MIRRORED = 1;
+
+/** The covariance with mirrored coordinates no wider than they can be. */
+function tamed(covariance: Float64Array, { coordinates, size }: JointDensity): Float64Array {
+  for (const at of coordinates.mirrored) {
+    const width = Math.sqrt(covariance[at * size + at]!);
+    if (width <= WIDEST_MIRRORED) continue;
+    const scale = WIDEST_MIRRORED / width;
+    for (let j = 0; j < size; j++) {
+      covariance[at * size + j]! *= scale;
+      covariance[j * size + at]! *= scale;
+    }
+  }
+  return covariance;
 }

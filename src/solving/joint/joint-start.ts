@@ -35,7 +35,7 @@ export interface NoiseStart {
 /** Impact parameters, over 1 + radius ratio, from which a fit is started: central to grazing. */
 export const IMPACT_STARTS: readonly number[] = [0.2, 0.55, 0.8, 0.93];
 /** Limb darkening of a sun-like star in the visual, as a start only. */
-const START_LIMB = [0.4, 0.25] as const;
+export const START_LIMB: readonly [number, number] = [0.4, 0.25];
 
 export function startFromEphemeris(ephemeris: Ephemeris, velocity: RelativeElements | null): CompanionStart {
   return {

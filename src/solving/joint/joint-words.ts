@@ -44,11 +44,26 @@ export function jointWarnings(
 ): Warning[] {
   return [
     ...result.search.notices,
+    ...statedInclinations(result),
     ...densityWarnings(photometry),
     ...shapeWarnings(companions),
     ...vettingWarnings(result),
     ...coverageWarnings(result, photometry),
+    ...pullWarnings(photometry),
   ];
+}
+
+function statedInclinations({ settled }: JointResult): Warning[] {
+  return settled.companions.flatMap(({ letter, choice }, c) =>
+    settled.fit.recipe.companions[c]!.transits && choice !== null && choice.inclinationDeg !== null
+      ? [
+          {
+            code: 'inclination-not-used',
+            message: `companion ${letter}: its transit tells the inclination, and the one that the case states is not used`,
+          },
+        ]
+      : [],
+  );
 }
 
 function densityWarnings({ starDensity, starDensityGiven, starDensityTension }: PhotometryRecord): Warning[] {
@@ -131,4 +146,23 @@ function coverageWarnings({ settled, observations }: JointResult, photometry: Ph
       });
   }
   return warnings;
+}
+
+/** Where the companions' pull on each other is more than a mid-time's error, the ephemeris of this solution is not the whole truth. */
+function pullWarnings({ interaction }: PhotometryRecord): Warning[] {
+  if (interaction === undefined) return [];
+  const { letters, predictedAmplitudeMinutes, comparisons } = interaction;
+  return letters.flatMap((letter): Warning[] => {
+    const amplitude = predictedAmplitudeMinutes[letter]?.value ?? null;
+    const comparison = comparisons[letter];
+    if (amplitude === null || comparison === undefined || amplitude <= comparison.medianErrorMinutes)
+      return [];
+    const others = letters.filter((other) => other !== letter).join(' and ');
+    return [
+      {
+        code: 'pull-shifts-mid-times',
+        message: `companion ${letter}: the pull of ${others} should move its mid-times by ${amplitude.toPrecision(2)} min to either side within these data, and the usual error of a mid-time is ${comparison.medianErrorMinutes.toPrecision(2)} min: undisturbed orbits no longer suffice, its period and epoch are less certain than stated, and its shape may be smeared; tugline timing with the mid-times of ${letters.join(' and ')} fits orbits that pull at each other`,
+      },
+    ];
+  });
 }

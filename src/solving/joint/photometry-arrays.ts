@@ -93,15 +93,16 @@ function ephemeridesOf({ fit, companions }: SettledJoint): Map<string, OwnEpheme
 /** Whole tables in order of time, with the trend of the search where there was one. */
 export function wholeCurves(
   tables: readonly LightCurveTable[],
-  { dips, surveyed, tableOf }: TransitSearch,
+  { dips, surveyed, searched }: TransitSearch,
 ): WholeLightCurve[] {
   return tables.map((table) => {
     const place = surveyed.indexOf(table.name);
     const trend = new Float64Array(table.used).fill(1);
-    if (dips !== null && place >= 0) {
-      let row = 0;
+    if (dips !== null && searched !== null && place >= 0) {
       dips.trend.forEach((value, i) => {
-        if ((tableOf[i] ?? 0) === place) trend[row++] = value;
+        if (searched.segmentOf[i] !== place) return;
+        const first = searched.firstRow[i]!;
+        trend.fill(value, first, first + searched.rowCount[i]!);
       });
     }
     return { name: table.name, timesBjdTdb: table.timesBjdTdb, flux: table.flux, trend };

@@ -14,6 +14,9 @@ import { startFromEphemeris } from './joint-start.js';
 import { AMPLITUDE, CONJUNCTION, LOG_PERIOD, SHAPE } from './natural.js';
 import type { SettledVelocities } from './velocity-part.js';
 
+/** Semi-amplitude from which a pull is fitted that the velocities alone do not show, in scales of its prior. */
+const START_PULL = 10;
+
 function letterAfter(index: number): string {
   return String.fromCharCode('b'.charCodeAt(0) + index);
 }
@@ -43,9 +46,23 @@ export function planCompanions(
       });
     });
   const { settled, portable, founds } = velocity;
+  const isOwned = ({ ephemeris }: FoundTransit): boolean =>
+    founds.some((own) => own?.ephemeris.midTimeDays === ephemeris.midTimeDays);
+  const unowned = transits.filter((found) => !isOwned(found));
+  const taken = new Set(
+    [...unowned, ...founds].flatMap((found) => (found === null ? [] : [found.ephemeris.letter])),
+  );
+  const freeLetter = (): string => {
+    let place = 0;
+    while (taken.has(letterAfter(place))) place++;
+    return letterAfter(place);
+  };
   const planned = portable.companions.map((companion, c) => {
     const found = founds[c] ?? null;
-    const letter = found?.ephemeris.letter ?? listed[c]?.letter ?? letterAfter(c);
+    const stated = listed[c]?.letter;
+    const letter =
+      found?.ephemeris.letter ?? (stated !== undefined && !taken.has(stated) ? stated : freeLetter());
+    taken.add(letter);
     const { circular } = settled.best.plan.companions[c]!;
     const start =
       found === null
@@ -57,14 +74,12 @@ export function planCompanions(
         : startFromEphemeris(found.ephemeris, companion);
     return plan(letter, start, found, { circular, pulls: true });
   });
-  // A transit that no companion of the velocities owns stands for itself.
-  for (const found of transits) {
-    if (founds.some((own) => own?.ephemeris.midTimeDays === found.ephemeris.midTimeDays)) continue;
-    const isTaken = planned.some(({ letter }) => letter === found.ephemeris.letter);
-    const letter = isTaken ? letterAfter(planned.length) : found.ephemeris.letter;
-    planned.push(
-      plan(letter, startFromEphemeris(found.ephemeris, null), found, { circular: true, pulls: false }),
-    );
+  // A transit that the velocities do not show stands for itself; where its period is known, what it may pull is fitted.
+  for (const found of unowned) {
+    const { letter, periodDays } = found.ephemeris;
+    const semiAmplitudeMps = START_PULL * velocity.part.scales.amplitudeScaleMps;
+    const start = { ...startFromEphemeris(found.ephemeris, null), semiAmplitudeMps };
+    planned.push(plan(letter, start, found, { circular: true, pulls: periodDays !== null }));
   }
   return planned;
 }

@@ -50,8 +50,8 @@ export function prepareCurve(
   const group = groupSize(timesDays, windows, count, shortest);
   const selected = select(table, timesDays, windows, group);
   const step = group > 1 ? typicalStep(timesDays, windows) : 0;
-  const exposureDays =
-    group > 1 ? Math.max(table.exposureDays, step) + (group - 1) * step : table.exposureDays;
+  // One exposure with the same spread in time: points at equal steps, each spread over its own exposure.
+  const exposureDays = Math.hypot(table.exposureDays, step * Math.sqrt(group * group - 1));
   const segments = selected.windows.map((window) => segmentOf(selected, window, terms));
   const typicalSigma = median(selected.sigmas);
   const data: CurveData = {
@@ -125,7 +125,7 @@ function select(
 ): Selected {
   const runs: (readonly [number, number])[] = [];
   const moved: Window[] = [];
-  const widest = 1.5 * group * typicalStep(timesDays, windows);
+  const widest = (group - 0.5) * typicalStep(timesDays, windows);
   for (const { start, end, events } of windows) {
     const first = runs.length;
     for (let at = start; at < end;) {

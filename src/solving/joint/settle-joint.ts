@@ -1,9 +1,11 @@
 /** The joint maximum: windows, baselines, circular or eccentric, settled in turn. */
 import type { Observations } from '../../observations/photometry-types.js';
 import type { Case } from '../../observations/types.js';
-import { chooseBaseline } from './baseline-choice.js';
+import { bicWithTransit, chooseBaseline } from './baseline-choice.js';
+import { bicByRefit } from './baseline-refit.js';
+import { carriedTo } from './carry-natural.js';
 import type { NumberedSet } from './found-transit.js';
-import { fitFrom, fitFromStarts, withShiftedEphemeris, type JointFit } from './joint-fit.js';
+import { fitFrom, fitFromStarts, type JointFit } from './joint-fit.js';
 import {
   prepareJoint,
   type PlannedCompanion,
@@ -11,13 +13,17 @@ import {
   type VelocityPart,
 } from './joint-recipe.js';
 import type { NoiseStart } from './joint-start.js';
+import type { PreparedCurve } from './prepare-curve.js';
 import { refinedBy } from './plan-companions.js';
+import { withOtherShapes, withShiftedEphemeris } from './restarts.js';
 
+/** Single events whose baselines are judged by refits; with more of them the others hold the shape of the transit. */
+const MOST_REFITTED = 4;
 /** Windows and baselines are settled anew this often: the first duration is that of a box. */
 const TURNS = 2;
 const START_ECCENTRICITY = 0.05;
 /** Below this signal to noise of the folded dips. */
-const FAINT = 30;
+const FAINT = 60;
 
 export interface SettledJoint {
   readonly prepared: PreparedJoint;
@@ -57,10 +63,10 @@ export function settleJoint(given: JointGiven, planned: readonly PlannedCompanio
   for (let turn = 0; turn < TURNS; turn++) {
     companions = refinedBy(fit, companions);
     baselines = chosenBaselines(given, prepared, fit);
-    prepared = prepare(companions, baselines);
-    const next = fitFrom(prepared.recipe, fit.natural);
+    const renewed = prepare(companions, baselines);
+    const next = fitFrom(renewed.recipe, carriedTo(fit.natural, fit.recipe, renewed.recipe));
     if (next === null) break;
-    fit = next;
+    [fit, prepared] = [next, renewed];
   }
   fit = overNeighbours(fit, companions);
   const otherShapes: (JointFit | null)[] = companions.map(() => null);
@@ -70,7 +76,8 @@ export function settleJoint(given: JointGiven, planned: readonly PlannedCompanio
       o === c ? { ...companion, circular: !companion.circular } : companion,
     );
     const otherPrepared = prepare(flipped, baselines);
-    const other = fitFrom(otherPrepared.recipe, withShape(fit, c, flipped[c]!.circular));
+    const start = carriedTo(withShape(fit, c, flipped[c]!.circular), fit.recipe, otherPrepared.recipe);
+    const other = fitFrom(otherPrepared.recipe, start);
     otherShapes[c] = other;
     if (other === null || other.bic >= fit.bic) continue;
     otherShapes[c] = fit;
@@ -84,9 +91,10 @@ function overNeighbours(fit: JointFit, companions: readonly PlannedCompanion[]):
   return companions.reduce((best, { found, start }, c) => {
     const { transits, isPeriodUnknown } = fit.recipe.companions[c]!;
     const isFaint = (found?.candidate?.signalToNoise ?? Infinity) < FAINT;
-    return transits && !isPeriodUnknown && isFaint
-      ? withShiftedEphemeris(best, c, start.transit!.durationDays)
-      : best;
+    if (!transits) return best;
+    const shiftedOver = !isPeriodUnknown && isFaint ? start.transit!.durationDays : null;
+    const shaped = withOtherShapes(best, c, shiftedOver);
+    return shiftedOver === null ? shaped : withShiftedEphemeris(shaped, c, shiftedOver);
   }, fit);
 }
 
@@ -115,16 +123,22 @@ function withShape(fit: JointFit, companion: number, circular: boolean): Float64
   return natural;
 }
 
-function chosenBaselines(given: JointGiven, prepared: PreparedJoint, fit: JointFit): Baselines {
+function chosenBaselines(
+  given: JointGiven,
+  { curves, ephemerides }: PreparedJoint,
+  fit: JointFit,
+): Baselines {
   const chosen = new Map<string, readonly string[]>();
-  prepared.curves.forEach((curve, i) => {
+  const isOpen = curves.filter(({ table }) => table.baseline === 'auto').length <= MOST_REFITTED;
+  curves.forEach((curve, i) => {
     if (curve.table.baseline !== 'auto') return;
     const likelihood = fit.density.curves[i]!;
     likelihood.predict(fit.density.curvePoints[i]!, false);
-    chosen.set(
-      curve.table.name,
-      chooseBaseline(curve, given.epochBjdTdb, prepared.ephemerides, likelihood.transit),
-    );
+    const score =
+      isOpen && curve.windows.length === 1
+        ? bicByRefit(fit, i)
+        : (other: PreparedCurve): number => bicWithTransit(other, likelihood.transit);
+    chosen.set(curve.table.name, chooseBaseline(curve, given.epochBjdTdb, ephemerides, score));
   });
   return chosen;
 }

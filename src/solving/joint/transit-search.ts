@@ -4,9 +4,10 @@ import type { LightCurveTable, MidTimeTable, Observations } from '../../observat
 import type { Case, ElementChoice } from '../../observations/types.js';
 import { dipDataOf } from '../dips/dip-data.js';
 import { searchDips } from '../dips/search-dips.js';
+import { statedDensityGcc } from '../dips/search-tables.js';
 import type { DipCandidate, DipData, DipSearch } from '../dips/types.js';
 import { numberCycles } from '../timing/cycles.js';
-import { mergeMidTimes } from '../timing/timing-data.js';
+import { mergeMidTimes, type MidTimes } from '../timing/timing-data.js';
 import { straightLine, type FoundTransit, type NumberedSet, type TransitSearch } from './found-transit.js';
 import { dipOfEphemeris, dipOfNight } from './event-dips.js';
 
@@ -34,13 +35,13 @@ export function searchTransits(
 ): TransitSearch {
   const { lightCurves, midTimes } = observations;
   const notices: { code: string; message: string }[] = [];
-  const sets = numberedSets(theCase, midTimes, epochBjdTdb, notices);
-  const known = [...sets.map((set) => knownFromSet(set)), ...knownFromCase(theCase, epochBjdTdb, sets)];
   const surveys = lightCurves.filter(
     (table) => table.used > 50 && table.timesBjdTdb.at(-1)! - table.timesBjdTdb[0]! > SURVEY_DAYS,
   );
   const data = surveys.length === 0 ? null : dipDataOf(surveys, epochBjdTdb);
   const dips = data === null ? null : searchSurveys(theCase, data, progress);
+  const sets = numberedSets(theCase, midTimes, epochBjdTdb, dips?.candidates ?? [], notices);
+  const known = [...sets.map((set) => knownFromSet(set)), ...knownFromCase(theCase, epochBjdTdb, sets)];
   const unmatched = new Set<DipCandidate>(dips?.candidates ?? []);
   const transits: FoundTransit[] = [];
   for (const ephemeris of known) {
@@ -56,16 +57,17 @@ export function searchTransits(
     sets,
     dips,
     surveyed: surveys.map(({ name }) => name),
-    tableOf: data?.segmentOf ?? new Uint16Array(0),
+    searched: data,
     notices,
   };
 }
 
-/** Mid-times of each companion, numbered. */
+/** Mid-times of each companion, numbered: with a stated period, or else with that of a dip whose transits they are. */
 function numberedSets(
   theCase: Case,
   tables: readonly MidTimeTable[],
   epochBjdTdb: number,
+  candidates: readonly DipCandidate[],
   notices: { code: string; message: string }[],
 ): NumberedSet[] {
   const letters = [...new Set(tables.map((table) => table.companion ?? 'b'))].sort();
@@ -73,27 +75,54 @@ function numberedSets(
     const own = tables.filter((table) => (table.companion ?? 'b') === letter);
     const merged = mergeMidTimes(own);
     notices.push(...merged.notices);
-    const stated = listed(theCase).find((choice) => choice.letter === letter)?.elements.period;
-    const periodDays = stated === undefined ? null : centreOf(stated);
-    if (merged.times.count < 2) {
-      const [path = ''] = own.map((table) => table.path);
-      throw new InputDataError([
-        {
-          code: 'too-few-mid-times',
-          file: path,
-          line: null,
-          column: null,
-          field: null,
-          message: 'one mid-time gives no ephemeris',
-          hint: 'add mid-times, or give the light curve itself',
-        },
-      ]);
-    }
+    const stated = statedPeriod(theCase, letter);
+    if (merged.times.count < 2) throw tooFewMidTimes(own);
+    const periodDays = stated ?? periodOfDip(merged.times, epochBjdTdb, candidates);
     const numbering = numberCycles(merged.times, { periodDays, renumber: false });
     notices.push(...numbering.notices);
     const shift = numbering.times.originBjdTdb - epochBjdTdb;
     return [{ letter, times: numbering.times, line: straightLine(numbering.times, shift) }];
   });
+}
+
+function tooFewMidTimes([first]: readonly MidTimeTable[]): InputDataError {
+  return new InputDataError([
+    {
+      code: 'too-few-mid-times',
+      file: first?.path ?? '',
+      line: null,
+      column: null,
+      field: null,
+      message: 'one mid-time gives no ephemeris',
+      hint: 'add mid-times, or give the light curve itself',
+    },
+  ]);
+}
+
+function statedPeriod(theCase: Case, letter: string): number | null {
+  const choice = listed(theCase).find((other) => other.letter === letter)?.elements.period;
+  return choice === undefined ? null : centreOf(choice);
+}
+
+/** Period of the dip at whose transits all mid-times lie; `null` where there is no such dip or its ephemeris does not reach so far. */
+function periodOfDip(
+  times: MidTimes,
+  epochBjdTdb: number,
+  candidates: readonly DipCandidate[],
+): number | null {
+  for (const { periodDays, periodSigmaDays, midTimeDays, midTimeSigmaDays, durationDays } of candidates) {
+    if (periodDays === null) continue;
+    const isOwn = Array.from(times.timesDays).every((time, row) => {
+      if (times.isOccultation[row] === 1) return true;
+      const turns = (time + times.originBjdTdb - epochBjdTdb - midTimeDays) / periodDays;
+      const cycles = Math.round(turns);
+      const error = Math.hypot(midTimeSigmaDays, cycles * (periodSigmaDays ?? 0), times.sigmasDays[row]!);
+      const slack = 0.5 * durationDays + 4 * error;
+      return slack < 0.25 * periodDays && Math.abs(turns - cycles) * periodDays < slack;
+    });
+    if (isOwn) return periodDays;
+  }
+  return null;
 }
 
 function listed(theCase: Case): Exclude<Case['companions'], 'auto' | number> {
@@ -147,17 +176,13 @@ function searchSurveys(
   data: DipData,
   progress: (stage: string, fraction: number) => void,
 ): DipSearch {
-  const { massSolar, radiusSolar, densityGcc } = theCase.star;
-  const density =
-    densityGcc?.value ??
-    (massSolar !== null && radiusSolar !== null ? (1.41 * massSolar.value) / radiusSolar.value ** 3 : null);
   const wanted = typeof theCase.companions === 'number' ? theCase.companions : theCase.maximumCompanions;
   return searchDips(
     data,
     {
       shortestPeriodDays: theCase.periodRangeDays.low,
       longestPeriodDays: theCase.periodRangeDays.high,
-      starDensityGcc: density,
+      starDensityGcc: statedDensityGcc(theCase),
       maximumCompanions: Math.max(1, wanted),
     },
     progress,
@@ -215,7 +240,7 @@ function searchedTransit(candidate: DipCandidate, place: number, theCase: Case):
   return {
     ephemeris: {
       letter: letterOf(theCase, place),
-      periodDays: candidate.periodDays,
+      periodDays: candidate.periodDays ?? statedPeriod(theCase, letterOf(theCase, place)),
       midTimeDays: candidate.midTimeDays,
       durationDays: candidate.durationDays,
       depth: candidate.depth,
@@ -248,7 +273,7 @@ function nightTransits(
     {
       ephemeris: {
         letter: letterOf(theCase, 0),
-        periodDays: null,
+        periodDays: statedPeriod(theCase, letterOf(theCase, 0)),
         midTimeDays: dip.midTimeDays,
         durationDays: dip.durationDays,
         depth: dip.depth,

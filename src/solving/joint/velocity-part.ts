@@ -72,6 +72,42 @@ export function caseWithTransits(
   };
 }
 
+/**
+ * The search stops at a listed companion that pulls too little to be fitted. Such a one leaves the list, so that others are
+ * found; the joint fit takes up its pull again.
+ */
+function settleWithTransits(
+  theCase: Case,
+  velocities: VelocitySet,
+  transits: readonly FoundTransit[],
+  epochBjdTdb: number,
+  progress: (stage: string, fraction: number) => void,
+): { readonly listed: Case; readonly periodic: readonly FoundTransit[]; readonly settled: Settled } {
+  let periodic = transits.filter(({ ephemeris }) => ephemeris.periodDays !== null);
+  let open = theCase;
+  for (;;) {
+    const listed = caseWithTransits(open, periodic, epochBjdTdb);
+    const settled = settleCase(listed, velocities, progress);
+    const refused = periodic[settled.best.plan.companions.length];
+    if (refused === undefined) return { listed, periodic, settled };
+    periodic = periodic.filter((transit) => transit !== refused);
+    open = without(open, refused.ephemeris.letter);
+  }
+}
+
+/** The case without one of its companions. */
+function without(theCase: Case, letter: string): Case {
+  const { companions } = theCase;
+  if (companions === 'auto') return theCase;
+  return {
+    ...theCase,
+    companions:
+      typeof companions === 'number'
+        ? Math.max(0, companions - 1)
+        : companions.filter((choice) => choice.letter !== letter),
+  };
+}
+
 export function settleVelocities(
   theCase: Case,
   velocities: VelocitySet,
@@ -80,21 +116,27 @@ export function settleVelocities(
   seed: number,
   progress: (stage: string, fraction: number) => void,
 ): SettledVelocities {
-  const listed = caseWithTransits(theCase, transits, epochBjdTdb);
-  const settled = settleCase(listed, velocities, progress);
+  const { listed, periodic, settled } = settleWithTransits(
+    theCase,
+    velocities,
+    transits,
+    epochBjdTdb,
+    progress,
+  );
   const portable = settled.explorer.portable(settled.best);
-  const periodic = transits.filter(({ ephemeris }) => ephemeris.periodDays !== null);
   const founds: (FoundTransit | null)[] = portable.companions.map((_, c) => periodic[c] ?? null);
   const single = transits.find(({ ephemeris }) => ephemeris.periodDays === null);
   if (single !== undefined) {
     const owner = ownerOf(single, settled, portable, founds, theCase, seed);
     if (owner !== null) {
+      const letter = String.fromCharCode('b'.charCodeAt(0) + owner);
+      const isTaken = transits.some((other) => other !== single && other.ephemeris.letter === letter);
       founds[owner] = {
         ...single,
         how: 'velocities',
         ephemeris: {
           ...single.ephemeris,
-          letter: String.fromCharCode('b'.charCodeAt(0) + owner),
+          letter: isTaken ? single.ephemeris.letter : letter,
           periodDays: portable.companions[owner]!.periodDays,
         },
       };
