@@ -166,7 +166,7 @@ export {
   residualsTable,
   solutionJson,
   stableJson,
-  timingsTable,
+  timingsTables,
   writeDossier,
   writeFiles,
 } from './dossier/index.js';

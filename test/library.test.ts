@@ -165,7 +165,7 @@ describe('the library with velocities, light curves and mid-times together', () 
     expect(rows(library.lightCurveTable(photometry!))).toHaveLength(points);
     const timed = record.photometry!.events.filter(({ midTime }) => midTime.value !== null).length;
     expect(rows(library.midTimesTable(photometry!))).toHaveLength(12 + timed);
-    const text = library.timingsTable(together);
+    const text = String(library.timingsTables(together, 'times.csv')[0]!.bytes);
     const table = library.parseAnyTable(text, 'timings.csv', library.requestFor('timings.csv'));
     if (table.content !== 'mid-times') throw new Error(`read as ${table.content}`);
     expect(table.used).toBe(timed);

@@ -52,7 +52,7 @@ export const SEED_OPTION: OptionSpec = option('seed', 'Uncertainty', 'N', 'seed 
 
 export const FORCE_OPTION: OptionSpec = option('force', 'Output', null, 'replace what an earlier run has written'); // prettier-ignore
 
-export const TIMINGS_OPTION: OptionSpec = option('timings-out', 'Output', 'FILE', 'also write the mid-time of each transit of the light curves, measured by itself, as a table that timing reads; of several companions those of the first (default: none)'); // prettier-ignore
+export const TIMINGS_OPTION: OptionSpec = option('timings-out', 'Output', 'FILE', 'also write the mid-time of each transit of the light curves, measured by itself, as a table that timing reads; several companions get a file each, FILE with their letters (default: none)'); // prettier-ignore
 
 export function outOption(help: string): OptionSpec {
   return option('out', 'Output', 'DIR', help);

@@ -6,7 +6,7 @@ export { elementsTable } from './elements-table.js';
 export { residualsTable } from './residuals-table.js';
 export { lightCurveTable } from './light-curve-table.js';
 export { midTimesTable } from './mid-times-table.js';
-export { timingsTable } from './timings-table.js';
+export { timingsTables } from './timings-table.js';
 export { modelGrid, modelTable, type ModelGrid } from './model-table.js';
 export { posteriorTable } from './posterior-table.js';
 export { runJson, type RunFacts } from './run-record.js';

@@ -35,7 +35,7 @@ async function run(given: CommandArguments, terminal: Terminal): Promise<number>
     dossierFiles,
     fileNameFrom,
     solutionJson,
-    timingsTable,
+    timingsTables,
     writeDossier,
     writeFiles,
   } = await import('../../dossier/index.js');
@@ -59,11 +59,7 @@ async function run(given: CommandArguments, terminal: Terminal): Promise<number>
     const files = dossierFiles(solution, await renderCharts(solution), () => runFacts(started));
     await writeDossier(folder, files, writing);
     if (timings !== null)
-      await writeFiles(
-        dirname(timings),
-        [{ name: basename(timings), bytes: timingsTable(solution) }],
-        writing,
-      );
+      await writeFiles(dirname(timings), timingsTables(solution, basename(timings)), writing);
     return solution;
   });
 
