@@ -2,7 +2,6 @@
 import { choleskyInPlace } from '../../numerics/linear-algebra.js';
 import { RandomStream } from '../../numerics/random.js';
 import { chainPool } from '../posterior/chain-pool.js';
-import { curvatureOfDensity } from '../posterior/density-curvature.js';
 import { CONVERGENCE, sampleMode } from '../posterior/sample-mode.js';
 import type { PosteriorOptions } from '../posterior/sample-posterior.js';
 import type { PosteriorRecord } from '../types.js';
@@ -10,6 +9,7 @@ import { jointPriorSentences } from './joint-priors.js';
 import { JointDensity } from './joint-density.js';
 import type { SettledJoint } from './settle-joint.js';
 import { BRIEF, maximise } from './maximise.js';
+import { steadyCovariance } from './steady-curvature.js';
 
 /** Draws of the curvature where nothing is sampled. */
 const CURVATURE_DRAWS = 4000;
@@ -71,7 +71,7 @@ export function drawJointCurvature(settled: SettledJoint, seed: number): JointSa
   const density = new JointDensity(settled.fit.recipe, 'all');
   const { size } = density;
   const centre = maximise(density, density.coordinates.position(settled.fit.natural), BRIEF).position;
-  const factor = tamed(curvatureOfDensity(density, centre), density);
+  const factor = tamed(steadyCovariance(density, centre), density);
   const isUsable = choleskyInPlace(factor, size);
   const random = RandomStream.fromSeed(seed, STREAM);
   const positions: number[] = [];

@@ -8,6 +8,8 @@ type Warning = SolutionRecord['warnings'][number];
 /** Densities that differ by more than this many of their common errors contradict each other. */
 const DENSITY_TENSION = 3;
 const ODD_EVEN_SIGMAS = 3;
+/** A transit must improve the BIC by this much. */
+const WEAK_GAIN = 10;
 /** A secondary dip is named below this false-alarm probability. */
 const SECONDARY_FALSE_ALARM = 1e-3;
 /** Scatter of means over a transit against what white noise gives. */
@@ -78,7 +80,7 @@ function densityWarnings({ starDensity, starDensityGiven, starDensityTension }: 
 }
 
 function shapeWarnings(companions: readonly CompanionRecord[]): Warning[] {
-  return companions.flatMap(({ letter, elements, derived }): Warning[] => {
+  return companions.flatMap(({ letter, elements, derived, evidence }): Warning[] => {
     const { period, impactParameter, radiusRatio } = elements;
     const warnings: Warning[] = [];
     if (period.value === null)
@@ -92,6 +94,11 @@ function shapeWarnings(companions: readonly CompanionRecord[]): Warning[] {
       warnings.push({
         code: 'grazing-transit',
         message: `companion ${letter}: the transit may be grazing; radius ratio and impact parameter are then tied to each other, and the radius is bounded by its prior`,
+      });
+    if (radiusRatio !== undefined && evidence.deltaBic < WEAK_GAIN)
+      warnings.push({
+        code: 'transit-not-supported',
+        message: `companion ${letter}: its transits improve the BIC by ${evidence.deltaBic.toFixed(1)} only (${WEAK_GAIN} wanted); what they tell of it is hardly more than its priors`,
       });
     if (derived.radius !== undefined && derived.radius.value !== null && derived.radius.value > 2.5)
       warnings.push({

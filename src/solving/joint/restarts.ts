@@ -90,9 +90,16 @@ function bestOf(fit: JointFit, starts: readonly Maximum[]): Maximum {
   return [...starts]
     .sort((a, b) => b.value - a.value)
     .slice(0, CARRIED)
-    .filter(({ value }) => value > fit.maximum.value - HOPELESS)
+    .filter(({ value }) => value > fit.maximum.value - HOPELESS && !isThere(fit, value))
     .map(({ position }) => maximise(fit.density, position, FULL))
     .reduce((a, b) => (b.value > a.value + RESTART_GAIN ? b : a), fit.maximum);
+}
+
+/** A brief fit that ends this little below the maximum is on its way there. */
+const SAME_MAXIMUM = 0.02;
+
+function isThere(fit: JointFit, value: number): boolean {
+  return value < fit.maximum.value + RESTART_GAIN && value > fit.maximum.value - SAME_MAXIMUM;
 }
 
 /** Shifts of a mid-time, and of the transits at either end of the data, in durations: neighbouring maxima lie about so far apart. */

@@ -11,7 +11,7 @@ import type { SystemCompanionRecord, TimingSystemSolved } from './system-types.j
 
 export interface TimingSystemChoices extends Omit<
   TimingChoices,
-  'periodDays' | 'facts' | 'starMassSolar' | 'onProgress'
+  'periodDays' | 'starMassSolar' | 'onProgress'
 > {
   readonly starMass: Measured | null;
   /** Periods that are known beforehand, by letter, good to 2 %. */
@@ -102,13 +102,6 @@ function solveEach(given: readonly CompanionTables[], choices: TimingSystemChoic
       const solved = solveTiming(tables, {
         ...shared,
         periodDays: periodsDays[letter] ?? null,
-        facts: {
-          massRatio: null,
-          scaledSemiMajorAxis: null,
-          semiMajorAxisAu: null,
-          properMotionMasPerYear: null,
-          distanceParsec: null,
-        },
         starMassSolar: star?.value ?? null,
         onProgress: (stage, share) => {
           progress(`companion ${letter}: ${stage}`, (ALONE * (c + share)) / given.length);
