@@ -163,7 +163,7 @@ function bullets(items: readonly string[]): string {
 /** `interaction.csv`: predicted mid-times of every companion, over the data and beyond. */
 export function interactionTable(fit: InteractionFit): string {
   return csvLines([
-    ['companion', 'cycle', 'predicted_mid_time', 'sigma_d', 'o_minus_c_min'],
+    ['companion', 'cycle', 'time_days', 'error_days', 'o_minus_c_min'],
     ...fit.predictions.flatMap(({ letter, cycles, timesDays, sigmasDays, variationMinutes }) =>
       Array.from(cycles, (cycle, i) => [
         csvText(letter),

@@ -20,6 +20,9 @@ export function daysPerUnit(unit: string | null): number | null {
   return unit === 's' || unit === 'min' || unit === 'h' || unit === 'd' ? DAYS_PER_UNIT[unit] : null;
 }
 
+/** Longest exposure that a case may state; rows farther apart are single exposures of a night, not a cadence. */
+const LONGEST_DAYS = 0.5;
+
 export interface Exposure {
   readonly days: number;
   readonly known: LightCurveTable['exposureKnown'];
@@ -86,6 +89,14 @@ function known(
   const why =
     comment === 'several' ? 'the comments name several exposure times' : 'no exposure time is stated';
   const hint = '(state it with --exposure, or exposure: in the case)';
+  if (spacing > LONGEST_DAYS) {
+    notices.push({
+      code: 'exposure-unknown',
+      message: `${why}, and rows ${short(spacing)} d apart tell none: exposures are taken as instantaneous ${hint}`,
+      lines: [],
+    });
+    return { days: 0, known: 'none' };
+  }
   if (spacing > 0) {
     notices.push({
       code: 'exposure-assumed',

@@ -38,6 +38,8 @@ export function suspiciousCurve(curve: CheckedCurve): TableNotice[] {
   say(jumps, 'time-jump', `the time jumps by ${JUMP_DAYS} d or more: a gap in the data, or a mistyped date?`);
   say(negative, 'outlier', 'the flux is zero or below: rows without light are used like all others');
   say(far, 'outlier', `the flux lies more than ${HUGE_FACTOR} times the usual scatter away`);
+  if (flux.length > 1 && flux.every((value) => value === flux[0]))
+    notices.push({ code: 'constant-flux', message: 'the flux is the same in every row: is it the right column?', lines: [] }); // prettier-ignore
   if (curve.hasErrors) {
     say(odd, 'odd-error', `the error is ${HUGE_FACTOR} times larger or smaller than usual`);
     notices.push(...errorUnitNotice(sigmas, scatter));

@@ -32,7 +32,7 @@ export function usableRegressors(
   if (constant.length > 0)
     notices.push({
       code: 'regressor-constant',
-      message: `${constant.length === 1 ? 'column' : 'columns'} ${constant.map(quoted).join(', ').slice(0, 300)} hold the same number in every row: of no use to a baseline`,
+      message: `${constant.length === 1 ? 'column' : 'columns'} ${constant.map(quoted).join(', ').slice(0, 300)} ${constant.length === 1 ? 'holds' : 'hold'} the same number in every row: of no use to a baseline`,
       lines: [],
     });
   return usable;
@@ -54,7 +54,7 @@ export function baselineOf(
       issues.add({
         code: 'unknown-regressor',
         field: 'baseline',
-        message: `the table has no column ${quoted(wanted)} that a baseline could use`,
+        message: `the table has no column ${quoted(wanted)} that a baseline could use: one of numbers that vary, without gaps`,
         hint: didYouMean(wanted, [...TIME_TERMS, ...regressors.keys()]),
       });
   }

@@ -14,6 +14,7 @@ import {
   withoutTimeUnit,
 } from './photometry-labels.js';
 import type { TextTable } from './table-text.js';
+import { quoted } from './text.js';
 import type { TableNotice, TableRequest } from './types.js';
 
 const MEANINGS = ['time', 'error', 'cycle', 'source', 'kind', 'quality'] as const;
@@ -22,6 +23,9 @@ export type MidTimeColumns = ColumnPlan<MidTimeMeaning>;
 
 /** Names that mean a cycle even where a number in the column is not whole. */
 const SURE_CYCLES = /^(cycle|epoch|cycles|cyclenumber|epochnumber|transitnumber)$/;
+
+/** Names of a column that says whose mid-time it is. */
+const COMPANIONS = /^(companion|companions|planet|object|letter)$/;
 
 /** @returns `null` when time or error is missing or ambiguous; the issues say which */
 export function planMidTimes(
@@ -63,6 +67,16 @@ export function planMidTimes(
   plan.choose('source', sourceRank);
   plan.choose('quality', (label) => qualityRank(splitLabel(label).word));
   plan.withoutTextQuality('quality', request.columns.quality !== undefined);
+  const taken = new Set(plan.of.values());
+  const named = plan.labels?.findIndex(
+    (label, index) => !taken.has(index) && COMPANIONS.test(splitLabel(label).word),
+  );
+  if (named !== undefined && named >= 0)
+    notices.push({
+      code: 'companion-column',
+      message: `column ${quoted(plan.labels![named]!)} is not used: all mid-times of a table belong to one companion; a table for each, with companion: in the case, tells them apart`,
+      lines: [],
+    });
   if (issues.count === before) {
     const missing = (['time', 'error'] as const).filter((meaning) => !plan.of.has(meaning));
     if (plan.labels !== null) reportMissingColumns(missing, plan.labels, issues);

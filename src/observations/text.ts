@@ -1,4 +1,4 @@
-/** Small helpers for text that came from outside: quoting it safely in messages, names from paths. */
+/** Small functions for text that came from outside: quoting it safely in messages, names from paths. */
 
 const CONTROL = /[\u0000-\u001f\u007f-\u009f\u200b-\u200f\u2028-\u202e\u2060-\u2069\ufeff]/g;
 const LONGEST_QUOTE = 60;

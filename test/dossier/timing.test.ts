@@ -34,7 +34,7 @@ const shrinking = simulated(1, (cycle) => -1e-7 * cycle * cycle, '<b>|x|</b> =1'
 describe('table of O - C', () => {
   it('reads back: observed minus model is the residual, and rows are sorted by time', () => {
     const [header = '', ...lines] = oMinusCTable(shrinking).trim().split('\r\n');
-    expect(header).toBe('cycle,event,time_days,error_min,o_minus_c_min,model_min,residual_min,source,file,line');
+    expect(header).toBe('cycle,kind,time_days,error_min,o_minus_c_min,model_min,residual_min,source,file,line');
     expect(lines).toHaveLength(48);
     let before = 0;
     for (const line of lines) {

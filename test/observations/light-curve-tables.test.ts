@@ -243,6 +243,17 @@ describe('exposure, band, regressors', () => {
     expect(notice(alone, 'exposure-unknown')).toBeDefined();
   });
 
+  it('takes a point a night as instantaneous, not as exposed for a day', () => {
+    const nightly = readCurve(curveText({ step: 0.9 }));
+    expect([nightly.exposureKnown, nightly.exposureDays]).toEqual(['none', 0]);
+    expect(notice(nightly, 'exposure-unknown')?.message).toContain('rows 0.9 d apart');
+  });
+
+  it('says that the flux is the same in every row', () => {
+    expect(notice(readCurve(curveText({ cells: () => [1, 1e-3] })), 'constant-flux')).toBeDefined();
+    expect(notice(readCurve(curveText()), 'constant-flux')).toBeUndefined();
+  });
+
   it.each(['# exposure time: 30 s', '# 30 s exposures', '# exptime = 0.5 min', '# Exposure of 30 seconds'])(
     'finds the exposure in the comment %s',
     (comment) => {

@@ -29,6 +29,12 @@ describe('tables of mid-times', () => {
     expect([...table.isOccultation]).toEqual([0, 0, 0, 0]);
   });
 
+  it('says that a column of companions is not used', () => {
+    const table = readMidTimes('BJD_TDB,err,companion\n2459000.5,0.001,b\n2459003.5,0.001,c\n');
+    expect(notice(table, 'companion-column')?.message).toContain('"companion"');
+    expect(notice(readMidTimes('BJD_TDB,err\n2459000.5,0.001\n'), 'companion-column')).toBeUndefined();
+  });
+
   it('does without cycles, and takes the scale from the list of columns', () => {
     const comments = '# Col 1: time of mid-transit in BJD_TDB days\n# Col 2: error in days\n';
     const table = readMidTimes(

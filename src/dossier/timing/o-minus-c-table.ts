@@ -5,7 +5,7 @@ import { machineFixed, machineNumber } from '../numbers.js';
 
 /** A ten-thousandth of a second. */
 const MINUTE_PLACES = 6;
-const HEADER = 'cycle,event,time_days,error_min,o_minus_c_min,model_min,residual_min,source,file,line'.split(
+const HEADER = 'cycle,kind,time_days,error_min,o_minus_c_min,model_min,residual_min,source,file,line'.split(
   ',',
 );
 

@@ -128,7 +128,7 @@ function vettingWarnings({ settled }: JointResult): Warning[] {
     if (redNoiseFactor > RED_NOISE && settled.fit.recipe.curves.some(({ noise }) => noise === 'white'))
       warnings.push({
         code: 'red-noise',
-        message: `companion ${letter}: means over a transit scatter ${redNoiseFactor.toFixed(1)} times as much as white noise would; noise: correlated in the case of a table counts it`,
+        message: `companion ${letter}: means over a transit scatter ${redNoiseFactor.toFixed(1)} times as much as white noise would; set noise: correlated for the table in the case to allow for it`,
       });
     return warnings;
   });

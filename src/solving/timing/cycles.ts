@@ -59,7 +59,7 @@ function recover(times: MidTimes, choices: NumberingChoices): Numbering {
       times,
       'too-few-to-count',
       'the times are too few to count cycles: at least three different transits are needed',
-      'add a column of cycles, or state the period with --period',
+      'add a column of cycles, or state the period: --period of timing, period: of the companion in a case',
     );
   const found = countCycles(
     countable,
@@ -78,14 +78,14 @@ function recover(times: MidTimes, choices: NumberingChoices): Numbering {
       stated === null
         ? `no period from ${SHORTEST_PERIOD_DAYS} d to ${(spacing * (1 + SPACING_SLACK)).toFixed(4)} d (the smallest spacing and a tenth) brings all times to one phase`
         : `no period within 2 % of ${stated} d brings all times to one phase`,
-      'do the times belong to one companion? Add a column of cycles, or state the period with --period',
+      'do the times belong to one companion? Add a column of cycles, or state the period: --period of timing, period: of the companion in a case',
     );
   if (second !== undefined && best.score - second.score < UNDECIDED_BELOW)
     throw wholeIssue(
       times,
       'cycles-undecided',
       `more than one period counts these times: ${listed(found)}`,
-      'state the right one with --period, or add a column of cycles',
+      'state the right one (--period of timing, period: of the companion in a case), or add a column of cycles',
     );
   return numbered(times, best, found, stated);
 }
