@@ -155,6 +155,8 @@ function periodBlock(
 ): Block {
   const low = Math.log(companion.shortestPeriodDays);
   const high = Math.log(companion.longestPeriodDays);
+  if (choice === undefined && use === 'stated' && companion.nominalPeriodDays !== null)
+    return fixedBlock(Math.log(companion.nominalPeriodDays), target);
   if (choice === undefined)
     // Without an ephemeris the whole range is possible, and its ends are reached.
     return dialBlock(companion.isPeriodUnknown ? rangeDial(low, high, use) : uniformDial(low, high), target);

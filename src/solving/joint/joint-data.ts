@@ -59,6 +59,8 @@ export interface JointCompanion {
   readonly conjunctionDays: number;
   /** One event is all that is known: the period follows from the shape and its prior alone. */
   readonly isPeriodUnknown: boolean;
+  /** Period at which the shape is fitted where one event leaves it open and no density of the star is stated: ln L hardly depends on it. */
+  readonly nominalPeriodDays: number | null;
   /** Period range of the prior, days. */
   readonly shortestPeriodDays: number;
   readonly longestPeriodDays: number;

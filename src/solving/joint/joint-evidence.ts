@@ -10,7 +10,7 @@ const SHAPE_PARAMETERS = 3;
 /** Those of its ephemeris. */
 const EPHEMERIS_PARAMETERS = 2;
 /** Method of the evidence where the table of mid-times is taken at its word. */
-export const MID_TIMES_ONLY = 'none: its mid-times are taken as those of transits';
+export const MID_TIMES_ONLY = 'none: its mid-times are taken at their word';
 /** A companion this small leaves no trace. */
 const NO_RADIUS = 1e-4;
 

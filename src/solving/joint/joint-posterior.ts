@@ -1,4 +1,5 @@
 /** Draws around the joint maximum: of the posterior by the sampler, or of the curvature at the maximum. */
+import { ConvergenceError } from '../../errors.js';
 import { choleskyInPlace } from '../../numerics/linear-algebra.js';
 import { RandomStream } from '../../numerics/random.js';
 import { chainPool } from '../posterior/chain-pool.js';
@@ -8,7 +9,7 @@ import type { PosteriorRecord } from '../types.js';
 import { jointPriorSentences } from './joint-priors.js';
 import { JointDensity } from './joint-density.js';
 import type { SettledJoint } from './settle-joint.js';
-import { BRIEF, maximise } from './maximise.js';
+import { FULL, maximise } from './maximise.js';
 import { steadyCovariance } from './steady-curvature.js';
 
 /** Draws of the curvature where nothing is sampled. */
@@ -33,7 +34,7 @@ export async function sampleJoint(
 ): Promise<JointSample> {
   const { recipe } = settled.fit;
   const density = new JointDensity(recipe, 'all');
-  const start = maximise(density, density.coordinates.position(settled.fit.natural), BRIEF).position;
+  const start = maximise(density, density.coordinates.position(settled.fit.natural), FULL).position;
   const pool = chainPool(Math.min(options.threads, CONVERGENCE.chains));
   try {
     const sample = await sampleMode(pool, recipe, density, start, {
@@ -61,6 +62,14 @@ export async function sampleJoint(
       priors: jointPriorSentences(recipe),
     };
     return { density, chains, logDensities, drawsPerChain, record };
+  } catch (error) {
+    // Errors of a thread arrive without their class.
+    if (!(error instanceof Error) || !error.message.includes('sampler')) throw error;
+    throw new ConvergenceError(
+      'the posterior cannot be sampled from its maximum, which lies too close to a wall of what is possible; --quick gives the curvature there',
+      {},
+      { cause: error },
+    );
   } finally {
     await pool.close();
   }
@@ -70,7 +79,7 @@ export async function sampleJoint(
 export function drawJointCurvature(settled: SettledJoint, seed: number): JointSample {
   const density = new JointDensity(settled.fit.recipe, 'all');
   const { size } = density;
-  const centre = maximise(density, density.coordinates.position(settled.fit.natural), BRIEF).position;
+  const centre = maximise(density, density.coordinates.position(settled.fit.natural), FULL).position;
   const factor = tamed(steadyCovariance(density, centre), density);
   const isUsable = choleskyInPlace(factor, size);
   const random = RandomStream.fromSeed(seed, STREAM);

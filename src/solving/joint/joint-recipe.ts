@@ -103,7 +103,9 @@ export function prepareJoint(
     curves: curves.map((curve) => curve.data),
     bands: bands.map((name) => bandSetting(theCase, name)),
     midTimes: midTimeData(companions, sets, epochBjdTdb),
-    companions: companions.map((companion) => jointCompanion(companion, isSeen(companion), explorer, scales)),
+    companions: companions.map((companion) =>
+      jointCompanion(companion, isSeen(companion), densityGcc != null, explorer, scales),
+    ),
     starDensityGcc: densityGcc ?? null,
     starRadiusLightDays: radiusSolar === null ? 0 : starRadiusLightDays(radiusSolar.value),
     scales,
@@ -119,6 +121,7 @@ function bandSetting(theCase: Case, name: string): BandSetting {
 function jointCompanion(
   companion: PlannedCompanion,
   transits: boolean,
+  hasDensity: boolean,
   explorer: Explorer | null,
   scales: PriorScales | null,
 ): JointCompanion {
@@ -134,6 +137,8 @@ function jointCompanion(
     choice,
     conjunctionDays: start.conjunctionDays,
     isPeriodUnknown: isUnknown,
+    nominalPeriodDays:
+      isUnknown && !hasDensity ? Math.max(start.periodDays, 1.5 * found.shortestPeriodDays) : null,
     shortestPeriodDays: isKnown
       ? start.periodDays / KNOWN_PERIOD_REACH
       : isUnknown

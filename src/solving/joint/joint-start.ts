@@ -37,9 +37,14 @@ export const IMPACT_STARTS: readonly number[] = [0.2, 0.55, 0.8, 0.93];
 /** Limb darkening of a sun-like star in the visual, as a start only. */
 export const START_LIMB: readonly [number, number] = [0.4, 0.25];
 
+/** Period at which a central transit of a star of 1 g/cm3 takes so long, days. */
+function periodOfDuration(durationDays: number): number {
+  return (Math.PI * durationDays) ** 3 * Math.exp(LOG_AXIS_FACTOR);
+}
+
 export function startFromEphemeris(ephemeris: Ephemeris, velocity: RelativeElements | null): CompanionStart {
   return {
-    periodDays: ephemeris.periodDays ?? velocity?.periodDays ?? 10 * ephemeris.durationDays,
+    periodDays: ephemeris.periodDays ?? velocity?.periodDays ?? periodOfDuration(ephemeris.durationDays),
     conjunctionDays: ephemeris.midTimeDays,
     eccentricity: velocity?.eccentricity ?? 0,
     argPeriastronStarRad: velocity?.argPeriastronStarRad ?? Math.PI / 2,

@@ -86,7 +86,7 @@ function shapeWarnings(companions: readonly CompanionRecord[]): Warning[] {
     if (period.value === null)
       warnings.push({
         code: 'period-unknown',
-        message: `companion ${letter}: one transit only; its period is not known (longer than ${(period.lower ?? 0).toPrecision(3)} d is likely) and nothing that needs it is given. Velocities, a second transit, or period: in the case would tell it`,
+        message: `companion ${letter}: one transit only; its period is not known, and nothing that needs it is given. Velocities, a second transit, or period: in the case would tell it`,
       });
     const outer = impactParameter?.upper;
     const ratio = radiusRatio?.lower;
@@ -134,12 +134,18 @@ function vettingWarnings({ settled }: JointResult): Warning[] {
   });
 }
 
-function coverageWarnings({ settled, observations }: JointResult, photometry: PhotometryRecord): Warning[] {
+function coverageWarnings(result: JointResult, photometry: PhotometryRecord): Warning[] {
+  const { settled, observations } = result;
   const warnings: Warning[] = [];
   const unused = observations.lightCurves.filter(
     ({ name }) => !photometry.lightCurves.some((curve) => curve.name === name),
   );
-  for (const { name } of unused)
+  const lone = new Set(
+    result.search.notices
+      .filter(({ code }) => code === 'second-lone-transit')
+      .map(({ message }) => message.split(':')[0]),
+  );
+  for (const { name } of unused.filter((table) => !lone.has(`light curve ${table.name}`)))
     warnings.push({
       code: 'light-curve-without-transit',
       message: `light curve ${name}: no transit falls on its points, so that it does not enter the fit`,

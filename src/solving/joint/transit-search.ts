@@ -9,12 +9,11 @@ import type { DipCandidate, DipData, DipSearch } from '../dips/types.js';
 import { numberCycles } from '../timing/cycles.js';
 import { mergeMidTimes, type MidTimes } from '../timing/timing-data.js';
 import { straightLine, type FoundTransit, type NumberedSet, type TransitSearch } from './found-transit.js';
-import { dipOfEphemeris, dipOfNight } from './event-dips.js';
+import { dipOfEphemeris } from './event-dips.js';
+import { nightTransits } from './night-transits.js';
 
 /** Light curves shorter than this are nights on a known target: nothing periodic is searched in them alone. */
 const SURVEY_DAYS = 1.5;
-/** A dip in a single night is believed above this gain in chi-square. */
-const NIGHT_GAIN = 40;
 /** Phases of two ephemerides of the same companion agree within this many durations. */
 const SAME_WITHIN_DURATIONS = 1;
 
@@ -50,8 +49,12 @@ export function searchTransits(
     transits.push(knownTransit(ephemeris, candidate, lightCurves, epochBjdTdb, transits.length, theCase));
   }
   for (const candidate of unmatched) transits.push(searchedTransit(candidate, transits.length, theCase));
-  if (transits.length === 0 && dips === null)
-    transits.push(...nightTransits(lightCurves, epochBjdTdb, theCase));
+  if (transits.length === 0 && dips === null) {
+    const letter = letterOf(theCase, 0);
+    const nights = nightTransits(lightCurves, epochBjdTdb, letter, statedPeriod(theCase, letter));
+    transits.push(...nights.transits);
+    notices.push(...nights.notices);
+  }
   return {
     transits: transits.slice(0, 20),
     sets,
@@ -253,38 +256,4 @@ function searchedTransit(candidate: DipCandidate, place: number, theCase: Case):
     candidate,
     isSeen: true,
   };
-}
-
-/** Transits in nights of which no ephemeris is known: one is taken, and a second one only if it belongs to the first. */
-function nightTransits(
-  lightCurves: readonly LightCurveTable[],
-  epochBjdTdb: number,
-  theCase: Case,
-): FoundTransit[] {
-  const seen = lightCurves.flatMap((table) => {
-    const dip = dipOfNight(table, epochBjdTdb);
-    return dip !== null && dip.gain > NIGHT_GAIN ? [{ table, dip }] : [];
-  });
-  const [first] = seen.sort((a, b) => b.dip.gain - a.dip.gain);
-  if (first === undefined) return [];
-  const { dip } = first;
-  const span = first.table.timesBjdTdb.at(-1)! - first.table.timesBjdTdb[0]!;
-  return [
-    {
-      ephemeris: {
-        letter: letterOf(theCase, 0),
-        periodDays: statedPeriod(theCase, letterOf(theCase, 0)),
-        midTimeDays: dip.midTimeDays,
-        durationDays: dip.durationDays,
-        depth: dip.depth,
-        occultationLagDays: null,
-      },
-      how: 'one event',
-      periodSigmaDays: null,
-      midTimeSigmaDays: 0.05 * dip.durationDays,
-      shortestPeriodDays: Math.max(0.5 * span, 2 * dip.durationDays),
-      candidate: null,
-      isSeen: true,
-    },
-  ];
 }

@@ -23,7 +23,7 @@ export async function withoutTransits(
     ...search.notices,
     {
       code: 'no-transit-found',
-      message: `no transit was found in ${lightCurves.length === 1 ? 'the light curve' : `the ${lightCurves.length} light curves`}${search.dips === null ? ' (too short to be searched for periodic dips: a period and a time of inferior conjunction in the case would say where to look)' : ''}`,
+      message: `no transit was found in ${lightCurves.length === 1 ? 'the light curve' : `the ${lightCurves.length} light curves`}${explanation(theCase, search)}`,
     },
   ];
   const why = 'no transit was found';
@@ -60,6 +60,19 @@ export async function withoutTransits(
     };
   }
   return emptySolution(theCase, observations, epochBjdTdb, options, { warnings, record, photometry });
+}
+
+/** Why nothing was found, where more can be said than that. */
+function explanation(theCase: Case, { dips }: TransitSearch): string {
+  if (dips !== null) return '';
+  const isStated =
+    typeof theCase.companions === 'object' &&
+    theCase.companions.some(
+      ({ elements }) => elements.period !== undefined && elements.timeOfInferiorConjunction !== undefined,
+    );
+  return isStated
+    ? ': no dip lies where the period and the time of inferior conjunction of the case put one'
+    : ' (too short to be searched for periodic dips: a period and a time of inferior conjunction in the case would say where to look)';
 }
 
 /** Nothing found and nothing else to go by. */

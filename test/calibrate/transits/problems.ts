@@ -131,6 +131,7 @@ function recipeOf(together: boolean): JointRecipe {
         choice: null,
         conjunctionDays: 0,
         isPeriodUnknown: false,
+        nominalPeriodDays: null,
         shortestPeriodDays: 2,
         longestPeriodDays: 5,
       },

@@ -107,6 +107,7 @@ export function companion(place: 0 | 1, more: Partial<JointCompanion> = {}): Joi
     choice: null,
     conjunctionDays: CONJUNCTIONS[place]!,
     isPeriodUnknown: false,
+    nominalPeriodDays: null,
     shortestPeriodDays: PERIODS[place]! / 1.5,
     longestPeriodDays: PERIODS[place]! * 1.5,
     ...more,
