@@ -34,7 +34,7 @@ function tableOf(events: readonly TransitEventRecord[]): string {
   return csvLines([
     HEADER,
     ...timed.map(({ midTime, cycle, table }) => [
-      machineNumber(midTime.value!),
+      machineNumber(midTime.value),
       machineFixed(midTime.sigma!, DAY_PLACES),
       String(cycle),
       csvText(table),

@@ -69,7 +69,5 @@ export function repeatedTimes(
     seen.add(key);
   }
   if (repeated.length === 0) return [];
-  return [
-    { code: 'repeated-time', message: 'the mid-time repeats an earlier row', lines: repeated },
-  ];
+  return [{ code: 'repeated-time', message: 'the mid-time repeats an earlier row', lines: repeated }];
 }

@@ -214,7 +214,7 @@ describe('dipDataOf', () => {
     const data = dipDataOf([table([2460001, 2460004], [1, 4]), table([2460002, 2460003], [2, 3])], 2460000);
     expect([...data.timesDays]).toEqual([1, 2, 3, 4]);
     expect([...data.flux]).toEqual([1, 2, 3, 4]);
-    expect([...data.segmentOf!]).toEqual([0, 1, 1, 0]);
+    expect([...data.segmentOf]).toEqual([0, 1, 1, 0]);
   });
 
   it('tables of different levels are brought to one', () => {
