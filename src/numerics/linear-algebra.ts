@@ -179,6 +179,19 @@ export function orthonormalise(columns: readonly Float64Array[], weights: Float6
   return basis;
 }
 
+/**
+ * Takes off a vector, in place, what lies along the members of an orthonormal basis (unit weights), one after the other.
+ *
+ * @param vector - overwritten
+ */
+export function projectOut(vector: Float64Array, basis: readonly Float64Array[]): void {
+  for (const unit of basis) {
+    let product = 0;
+    for (let i = 0; i < vector.length; i++) product += vector[i]! * unit[i]!;
+    for (let i = 0; i < vector.length; i++) vector[i]! -= product * unit[i]!;
+  }
+}
+
 function weightedDot(a: Float64Array, b: Float64Array, weights: Float64Array): number {
   let sum = 0;
   for (let i = 0; i < weights.length; i++) sum += weights[i]! * a[i]! * b[i]!;

@@ -28,6 +28,12 @@ export function median(values: ArrayLike<number>): number {
   return quantile(values, 0.5);
 }
 
+/** The middle value, the upper of two where their number is even: one of the values themselves. `undefined` without values. */
+export function upperMedian(values: Iterable<number>): number | undefined {
+  const sorted = Float64Array.from(values).sort();
+  return sorted[Math.floor(sorted.length / 2)];
+}
+
 /** Median of |value - median|, without the factor 1.4826 that makes it a standard deviation for normal values. */
 export function medianAbsoluteDeviation(values: ArrayLike<number>): number {
   const centre = median(values);

@@ -4,6 +4,11 @@ import { requirePositive } from './domain.js';
 
 const GRAMS_PER_CM3_PER_SI = 1e-3;
 
+/** ln of the factor F in (a/R)^3 = F rho P^2, rho in g/cm3 and P in days: G/(3 pi). */
+export const LOG_SCALED_AXIS_FACTOR: number = Math.log(
+  (GRAVITATIONAL_CONSTANT * 1000 * SECONDS_PER_DAY ** 2) / (3 * Math.PI),
+);
+
 /**
  * Mean density of the star, g/cm3: 3 pi (a/R)^3 / (G P^2) [SeagerMallenOrnelas2003]. The companion's mass is neglected: what
  * comes out is the star's density plus k^3 times the companion's.

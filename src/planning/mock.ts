@@ -4,6 +4,7 @@
  */
 import { ModelDomainError, UsageError } from '../errors.js';
 import { RandomStream } from '../numerics/random.js';
+import { companionLetter } from '../observations/letters.js';
 import type { MockInstrument, MockPlan, TableContent } from '../observations/types.js';
 import { DAYS_PER_YEAR } from '../orbit/constants.js';
 import { evaluateVelocity } from '../signals/evaluate-velocity.js';
@@ -99,7 +100,7 @@ function truthOf(plan: MockPlan): VelocityModelPoint {
       ...elements,
       argPeriastronStarRad: (argPeriastronStarDeg * Math.PI) / 180,
     })),
-    letters: plan.companions.map((_, index) => String.fromCharCode('b'.charCodeAt(0) + index)),
+    letters: plan.companions.map((_, index) => companionLetter(index)),
     zeroPointsMps: new Float64Array(0),
     jittersMps: new Float64Array(0),
     epochBjdTdb: plan.epochBjdTdb,

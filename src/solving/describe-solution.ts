@@ -1,5 +1,6 @@
 /** The solution as it is recorded: what was settled, with uncertainties read from draws. Pure. */
 import { rootMeanSquare } from '../numerics/summary.js';
+import { companionLetter } from '../observations/letters.js';
 import type { Case, Measured, VelocitySet } from '../observations/types.js';
 import { DAYS_PER_YEAR } from '../orbit/constants.js';
 import type { VelocityModelPoint } from '../signals/velocity-model.js';
@@ -144,7 +145,7 @@ function withMarginals(record: CompanionRecord, marginals: CompanionMarginals | 
 
 function lettersOf(theCase: Case, best: PlannedFit): string[] {
   const listed = typeof theCase.companions === 'object' ? theCase.companions : [];
-  return best.plan.companions.map((_, c) => listed[c]?.letter ?? String.fromCharCode('b'.charCodeAt(0) + c));
+  return best.plan.companions.map((_, c) => listed[c]?.letter ?? companionLetter(c));
 }
 
 export function starQuantity(measured: Measured | null, unit: string): Quantity {

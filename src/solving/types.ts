@@ -4,6 +4,7 @@
  */
 import type { TimeScale, VelocitySet } from '../observations/types.js';
 import type { VelocityModelPoint } from '../signals/velocity-model.js';
+import type { ProvenanceRecord } from './provenance.js';
 import type { Quantity } from './quantity.js';
 import type {
   PhotometryRecord,
@@ -213,19 +214,7 @@ export interface SolutionRecord {
   /** Sentences: what the numbers assume. */
   readonly assumptions: readonly string[];
   readonly warnings: readonly { readonly code: string; readonly message: string }[];
-  readonly provenance: {
-    readonly program: 'tugline';
-    readonly version: string;
-    readonly node: string;
-    readonly seed: number;
-    readonly command: readonly string[];
-    readonly inputs: readonly {
-      readonly path: string;
-      readonly sha256: string;
-      readonly rows: number;
-      readonly used: number;
-    }[];
-  };
+  readonly provenance: ProvenanceRecord;
 }
 
 /** One peak of a periodogram. */

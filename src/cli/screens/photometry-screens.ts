@@ -73,9 +73,11 @@ function curveFacts(table: LightCurveTable, summary: LightCurveSummary): string[
   ]); // prettier-ignore
 }
 
-export function lightCurveScreen(
-  table: LightCurveTable,
-  summary: LightCurveSummary,
+/** Heading, columns, facts and notices of a table. */
+function tableScreenOf(
+  table: LightCurveTable | MidTimeTable,
+  content: string,
+  facts: readonly string[],
   paint: Terminal['paint'],
 ): string {
   const notices = noticeLines(table.notices, paint);
@@ -83,10 +85,18 @@ export function lightCurveScreen(
     '',
     ...columnLines(table.columns),
     '',
-    ...curveFacts(table, summary),
+    ...facts,
     ...(notices.length === 0 ? [] : ['', ...notices]),
   ];
-  return screenOf(headingOf(table.path, table.rows, table.used, 'a light curve'), body, paint);
+  return screenOf(headingOf(table.path, table.rows, table.used, content), body, paint);
+}
+
+export function lightCurveScreen(
+  table: LightCurveTable,
+  summary: LightCurveSummary,
+  paint: Terminal['paint'],
+): string {
+  return tableScreenOf(table, 'a light curve', curveFacts(table, summary), paint);
 }
 
 /** The same for scripts, without the arrays of the observations. */
@@ -132,15 +142,7 @@ export function midTimeScreen(
   summary: MidTimeSummary,
   paint: Terminal['paint'],
 ): string {
-  const notices = noticeLines(table.notices, paint);
-  const body = [
-    '',
-    ...columnLines(table.columns),
-    '',
-    ...midTimeFacts(table, summary),
-    ...(notices.length === 0 ? [] : ['', ...notices]),
-  ];
-  return screenOf(headingOf(table.path, table.rows, table.used, 'mid-times'), body, paint);
+  return tableScreenOf(table, 'mid-times', midTimeFacts(table, summary), paint);
 }
 
 /** The same for scripts, without the arrays of the observations. */

@@ -14,6 +14,7 @@ import { sampleCompanions } from './model-curve.js';
 import { panelFrames } from './panel-frames.js';
 import { grow, rangeWithBars } from './ranges.js';
 import { commonOptions, MODEL_COLOUR } from './style.js';
+import { zeroLine } from './panel-parts.js';
 
 const HEIGHT_MM = 82;
 const LEGEND_LINE_MM = 3.4;
@@ -124,16 +125,7 @@ export function foldedChart(solved: Solved, companion: number): ChartDrawing {
         annotation: {
           clip: false,
           annotations: {
-            zero: {
-              type: 'line',
-              yScaleID: 'yRes',
-              xScaleID: 'x',
-              yMin: 0,
-              yMax: 0,
-              borderColor: MODEL_COLOUR,
-              borderWidth: 0.9,
-              drawTime: 'beforeDatasetsDraw',
-            },
+            zero: zeroLine('yRes'),
           },
         },
       },

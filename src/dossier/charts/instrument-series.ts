@@ -4,6 +4,7 @@ import type { Solved } from '../../solving/types.js';
 import type { ErrorBarSeries } from './error-bars.js';
 import { cleanLabel } from './labels.js';
 import { markerRadius, markerStyle, tint } from './style.js';
+import { markedPoints } from './panel-parts.js';
 
 const LONGEST_NAME = 18;
 
@@ -48,22 +49,8 @@ export function pointDatasets(
   const labels = instrumentLabels(solved);
   const radius = markerRadius(solved.velocities.count) * size;
   return rowsOf(solved).map((rows, instrument) => {
-    const style = markerStyle(instrument);
-    return {
-      type: 'scatter',
-      label: labels[instrument]!,
-      data: rows.map((row) => ({ x: x[row]!, y: y[row]! })),
-      yAxisID,
-      pointStyle: style.shape,
-      pointRadius: radius * style.sizeFactor,
-      pointBackgroundColor: style.fill,
-      pointBorderColor: style.edge,
-      pointBorderWidth: radius > 2 ? 0.7 : 0.45,
-      backgroundColor: style.fill,
-      borderColor: style.edge,
-      borderWidth: 0.8,
-      order: 20,
-    };
+    const data = rows.map((row) => ({ x: x[row]!, y: y[row]! }));
+    return markedPoints(labels[instrument]!, data, yAxisID, instrument, radius);
   });
 }
 

@@ -14,6 +14,7 @@ import { grow, rangeWithBars } from './ranges.js';
 import { renderDrawings } from './render-charts.js';
 import { BAND_COLOUR, commonOptions, markerRadius, markerStyle, MODEL_COLOUR, tint } from './style.js';
 import { timeOffset } from './velocities-chart.js';
+import { markedPoints, zeroLine } from './panel-parts.js';
 
 const MINUTES_PER_DAY = 1440;
 const HEIGHT_MM = 84;
@@ -129,16 +130,7 @@ function interactionChart(
         annotation: {
           clip: false,
           annotations: {
-            zero: {
-              type: 'line',
-              yScaleID: 'yRes',
-              xScaleID: 'x',
-              yMin: 0,
-              yMax: 0,
-              borderColor: MODEL_COLOUR,
-              borderWidth: 0.9,
-              drawTime: 'beforeDatasetsDraw',
-            },
+            zero: zeroLine('yRes'),
           },
         },
       },
@@ -182,21 +174,6 @@ function points(
   index: number,
   size: number,
 ): ChartDataset<'scatter'> {
-  const style = markerStyle(index);
-  const radius = markerRadius(x.length) * size;
-  return {
-    type: 'scatter',
-    label: DATA_LABEL,
-    data: Array.from(x, (value, row) => ({ x: value, y: y[row]! })),
-    yAxisID,
-    pointStyle: style.shape,
-    pointRadius: radius * style.sizeFactor,
-    pointBackgroundColor: style.fill,
-    pointBorderColor: style.edge,
-    pointBorderWidth: radius > 2 ? 0.7 : 0.45,
-    backgroundColor: style.fill,
-    borderColor: style.edge,
-    borderWidth: 0.8,
-    order: 20,
-  };
+  const data = Array.from(x, (value, row) => ({ x: value, y: y[row]! }));
+  return markedPoints(DATA_LABEL, data, yAxisID, index, markerRadius(x.length) * size);
 }

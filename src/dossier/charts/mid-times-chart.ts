@@ -12,14 +12,8 @@ import { heading, legend } from './headings.js';
 import { cleanLabel, fileLetter, significantText } from './labels.js';
 import { panelFrames } from './panel-frames.js';
 import { grow, rangeWithBars } from './ranges.js';
-import {
-  BAND_COLOUR,
-  commonOptions,
-  FAINT_TEXT_COLOUR,
-  markerRadius,
-  markerStyle,
-  MODEL_COLOUR,
-} from './style.js';
+import { BAND_COLOUR, commonOptions, FAINT_TEXT_COLOUR, markerRadius, markerStyle } from './style.js';
+import { zeroLine } from './panel-parts.js';
 
 const HEIGHT_MM = 78;
 const MOST_NARROW = 12;
@@ -179,7 +173,7 @@ function midTimesChart(solved: Solved, times: FittedMidTimes): ChartDrawing {
         annotation: {
           clip: false,
           annotations: {
-            zero: { type: 'line', yScaleID: 'y', xScaleID: 'x', yMin: 0, yMax: 0, borderColor: MODEL_COLOUR, borderWidth: 0.9, drawTime: 'beforeDatasetsDraw' },
+            zero: zeroLine('y'),
           },
         },
       },

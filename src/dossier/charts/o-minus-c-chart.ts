@@ -14,6 +14,7 @@ import { grow, rangeWithBars } from './ranges.js';
 import { BAND_COLOUR, commonOptions, MODEL_COLOUR } from './style.js';
 import { timingBars, timingPoints, timingSeries, type TimingPanel } from './timing-series.js';
 import { timeOffset } from './velocities-chart.js';
+import { zeroLine } from './panel-parts.js';
 
 const LONGEST_TITLE = 40;
 const PANEL_HEIGHT_MM = 52;
@@ -190,16 +191,7 @@ export function oMinusCChart(solved: TimingSolved): ChartDrawing {
         annotation: {
           clip: false,
           annotations: {
-            zero: {
-              type: 'line',
-              yScaleID: 'yRes',
-              xScaleID: 'x',
-              yMin: 0,
-              yMax: 0,
-              borderColor: MODEL_COLOUR,
-              borderWidth: 0.9,
-              drawTime: 'beforeDatasetsDraw',
-            },
+            zero: zeroLine('yRes'),
           },
         },
       },

@@ -4,6 +4,7 @@ import type { TimingSolved } from '../../solving/timing/types.js';
 import type { ErrorBarSeries } from './error-bars.js';
 import { cleanLabel } from './labels.js';
 import { markerRadius, markerStyle, tint } from './style.js';
+import { markedPoints } from './panel-parts.js';
 
 const LONGEST_NAME = 22;
 /** More than this many sources are drawn, but the smallest of them as one. */
@@ -50,22 +51,8 @@ export function timingPoints(
 ): ChartDataset<'scatter'>[] {
   const radius = markerRadius(count) * panel.size;
   return series.map(({ label, rows }, index) => {
-    const style = markerStyle(index);
-    return {
-      type: 'scatter',
-      label,
-      data: rows.filter(panel.shows).map((row) => ({ x: panel.x[row]!, y: panel.y[row]! })),
-      yAxisID: panel.yAxisID,
-      pointStyle: style.shape,
-      pointRadius: radius * style.sizeFactor,
-      pointBackgroundColor: style.fill,
-      pointBorderColor: style.edge,
-      pointBorderWidth: radius > 2 ? 0.7 : 0.45,
-      backgroundColor: style.fill,
-      borderColor: style.edge,
-      borderWidth: 0.8,
-      order: 20,
-    };
+    const data = rows.filter(panel.shows).map((row) => ({ x: panel.x[row]!, y: panel.y[row]! }));
+    return markedPoints(label, data, panel.yAxisID, index, radius);
   });
 }
 

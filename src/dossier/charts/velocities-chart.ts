@@ -14,6 +14,7 @@ import type { ModelCurve } from './model-curve.js';
 import { panelFrames } from './panel-frames.js';
 import { grow, rangeWithBars } from './ranges.js';
 import { BAND_COLOUR, commonOptions, FAINT_TEXT_COLOUR, MODEL_COLOUR } from './style.js';
+import { zeroLine } from './panel-parts.js';
 
 const LONGEST_TITLE = 40;
 const HEIGHT_MM = 100;
@@ -103,16 +104,7 @@ export function velocitiesChart(solved: Solved): ChartDrawing {
         annotation: {
           clip: false,
           annotations: {
-            zero: {
-              type: 'line',
-              yScaleID: 'yRes',
-              xScaleID: 'x',
-              yMin: 0,
-              yMax: 0,
-              borderColor: MODEL_COLOUR,
-              borderWidth: 0.9,
-              drawTime: 'beforeDatasetsDraw',
-            },
+            zero: zeroLine('yRes'),
           },
         },
       },

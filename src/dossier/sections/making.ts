@@ -1,4 +1,5 @@
 /** Program, command, seed, inputs with checksums, and what lies in the folder. */
+import type { ProvenanceRecord } from '../../solving/provenance.js';
 import type { Solved } from '../../solving/types.js';
 import { markdownCode } from '../escape.js';
 import { thinningOf } from '../posterior-table.js';
@@ -27,6 +28,28 @@ function thinnedNote({ posterior }: Solved, name: string): string {
     : ` (one draw in ${step}, evenly, to keep the file small; the numbers rest on all draws)`;
 }
 
+/** Program, seed and command line. */
+export function madeBy(provenance: ProvenanceRecord): string[] {
+  return [
+    `Made by ${provenance.program} ${provenance.version} (Node ${provenance.node}) with seed ${provenance.seed}:`,
+    markdownCode(commandLine(provenance.command)),
+  ];
+}
+
+/** The files that went in, with their checksums. */
+export function inputsTable({ inputs }: ProvenanceRecord): string {
+  return markdownTable(
+    ['table', 'rows', 'used', 'SHA-256'],
+    inputs.map((input) => [
+      markdownCode(input.path),
+      String(input.rows),
+      String(input.used),
+      markdownCode(input.sha256),
+    ]),
+    [1, 2],
+  );
+}
+
 /** The command as one would type it again. */
 export function commandLine(command: readonly string[]): string {
   return command
@@ -42,21 +65,11 @@ export const making: ReportSection = {
       name.endsWith('/') ? context.files.some((file) => file.startsWith(name)) : context.files.includes(name),
     );
     return [
-      `Made by ${provenance.program} ${provenance.version} (Node ${provenance.node}) with seed ${provenance.seed}:`,
-      markdownCode(commandLine(provenance.command)),
+      ...madeBy(provenance),
       solved.record.posterior?.status === 'interrupted'
         ? 'The sampling was interrupted; how far it had come depends on the moment, so that a repetition need not give the same files.'
         : 'The same program, inputs, options and seed give the same files again, byte for byte.',
-      markdownTable(
-        ['table', 'rows', 'used', 'SHA-256'],
-        provenance.inputs.map((input) => [
-          markdownCode(input.path),
-          String(input.rows),
-          String(input.used),
-          markdownCode(input.sha256),
-        ]),
-        [1, 2],
-      ),
+      inputsTable(provenance),
       'In this folder:',
       present.map(([name, note]) => `- \`${name}\`: ${note}${thinnedNote(solved, name)}`).join('\n'),
     ];

@@ -2,7 +2,7 @@
 import type { PredictionRecord, TimingModelRecord, TimingRecord } from '../../solving/timing/types.js';
 import { escapeMarkdown, markdownCode } from '../escape.js';
 import { fixedPlaces, formatProbability, formatQuantity, significant, typographicMinus } from '../numbers.js';
-import { commandLine } from '../sections/making.js';
+import { inputsTable, madeBy } from '../sections/making.js';
 import type { ReportChart } from '../sections/section.js';
 import { markdownTable } from '../sections/section.js';
 import { MODEL_WORDS, timingQuantities, timingText } from './timing-titles.js';
@@ -167,19 +167,9 @@ export function cycleBlocks(record: TimingFindings, level: string): string[] {
 export function timingMakingBlocks(provenance: TimingRecord['provenance'], files: string): string[] {
   return [
     '## How this was made',
-    `Made by ${provenance.program} ${provenance.version} (Node ${provenance.node}) with seed ${provenance.seed}:`,
-    markdownCode(commandLine(provenance.command)),
+    ...madeBy(provenance),
     'The same program, inputs, options and seed give the same files again, byte for byte.',
-    markdownTable(
-      ['table', 'rows', 'used', 'SHA-256'],
-      provenance.inputs.map((input) => [
-        markdownCode(input.path),
-        String(input.rows),
-        String(input.used),
-        markdownCode(input.sha256),
-      ]),
-      [1, 2],
-    ),
+    inputsTable(provenance),
     'In this folder:',
     files,
   ];

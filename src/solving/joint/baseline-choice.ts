@@ -1,4 +1,5 @@
 /** Which terms a baseline needs beside its constant: added one at a time while the evidence pays for them. */
+import { orthonormalise, projectOut } from '../../numerics/linear-algebra.js';
 import { prepareCurve, type PreparedCurve } from './prepare-curve.js';
 import type { Ephemeris } from './curve-windows.js';
 import { airmassLabel } from './event-dips.js';
@@ -21,33 +22,21 @@ export function bicWithTransit(curve: PreparedCurve, transit: Float64Array): num
   let count = 0;
   for (const { start, end, design, columns } of data.segments) {
     const rows = end - start;
-    const basis: Float64Array[] = [];
-    for (let j = 0; j < columns; j++) {
-      const own = Float64Array.from(
-        { length: rows },
-        (_, i) => (design[i * columns + j]! * transit[start + i]!) / data.sigmas[start + i]!,
-      );
-      const size = length(own);
-      for (const other of basis) subtract(own, other);
-      const norm = length(own);
-      if (norm > 1e-9 * size) basis.push(own.map((value) => value / norm));
-    }
-    const residual = Float64Array.from(
-      { length: rows },
-      (_, i) => data.flux[start + i]! / data.sigmas[start + i]!,
+    const weighted = (at: (row: number) => number): Float64Array =>
+      Float64Array.from({ length: rows }, (_, i) => at(i) / data.sigmas[start + i]!);
+    const basis = orthonormalise(
+      Array.from({ length: columns }, (_, j) =>
+        weighted((i) => design[i * columns + j]! * transit[start + i]!),
+      ),
+      new Float64Array(rows).fill(1),
     );
-    for (const other of basis) subtract(residual, other);
+    const residual = weighted((i) => data.flux[start + i]!);
+    projectOut(residual, basis);
     for (const value of residual) chiSquare += value * value;
     parameters += basis.length;
     count += rows;
   }
   return count * Math.log(chiSquare / count) + parameters * Math.log(count);
-}
-
-function subtract(vector: Float64Array, unit: Float64Array): void {
-  let product = 0;
-  for (let i = 0; i < vector.length; i++) product += vector[i]! * unit[i]!;
-  for (let i = 0; i < vector.length; i++) vector[i]! -= product * unit[i]!;
 }
 
 /** Terms that may enter: polynomials of time; in a single night also the regressors of the table. */
@@ -107,10 +96,4 @@ export function chooseBaseline(
     bic = best.bic;
   }
   return terms;
-}
-
-function length(vector: Float64Array): number {
-  let sum = 0;
-  for (const value of vector) sum += value * value;
-  return Math.sqrt(sum);
 }

@@ -1,4 +1,5 @@
 /** Which block samples which natural parameter, as the case and the data ask. */
+import { upperMedian } from '../../numerics/summary.js';
 import type { ElementChoice } from '../../observations/types.js';
 import { dialBlock, fixedBlock, type Block, type Dial, type PriorUse } from './block.js';
 import { crossingBlock } from './crossing-block.js';
@@ -72,7 +73,7 @@ export function blocksOf(recipe: JointRecipe, index: NaturalIndex, use: PriorUse
       blocks.push(fixedBlock(0, target));
       return;
     }
-    const typical = Float64Array.from(set.sigmasDays).sort()[Math.floor(set.sigmasDays.length / 2)]!;
+    const typical = upperMedian(set.sigmasDays)!;
     blocks.push(dialBlock(scatterDial(0.3 * typical, 1000 * typical), target));
   });
   return blocks;
@@ -220,6 +221,7 @@ function curveBlocks(curve: CurveData, i: number, index: NaturalIndex, use: Prio
   const { jitter, dilution, typicalSigma, scatter, noise } = curve;
   const jitterTarget = index.curveJitter(i);
   const span = curve.timesDays[curve.timesDays.length - 1]! - curve.timesDays[0]!;
+  const step = usualStep(curve.timesDays);
   return [
     jitter === null
       ? dialBlock(scatterDial(0.3 * typicalSigma, 30 * scatter + 100 * typicalSigma), jitterTarget)
@@ -241,12 +243,7 @@ function curveBlocks(curve: CurveData, i: number, index: NaturalIndex, use: Prio
           ),
           // From a few exposures to the span: shorter is white noise, longer is the baseline's part.
           dialBlock(
-            logarithmicDial(
-              3 * medianStep(curve.timesDays),
-              Math.max(span, 10 * medianStep(curve.timesDays)),
-              0,
-              use,
-            ),
+            logarithmicDial(3 * step, Math.max(span, 10 * step), 0, use),
             index.correlatedNoise(i) + 1,
           ),
         ]
@@ -254,13 +251,9 @@ function curveBlocks(curve: CurveData, i: number, index: NaturalIndex, use: Prio
   ];
 }
 
-export function medianStep(timesDays: Float64Array): number {
-  const steps = Float64Array.from(
-    { length: timesDays.length - 1 },
-    (_, i) => timesDays[i + 1]! - timesDays[i]!,
-  );
-  steps.sort();
-  return Math.max(1e-6, steps[Math.floor(steps.length / 2)] ?? 1e-3);
+function usualStep(timesDays: Float64Array): number {
+  const steps = timesDays.subarray(1).map((time, i) => time - timesDays[i]!);
+  return Math.max(1e-6, upperMedian(steps) ?? 1e-3);
 }
 
 function velocityBlocks(recipe: JointRecipe, index: NaturalIndex, use: PriorUse): Block[] {
@@ -272,8 +265,8 @@ function velocityBlocks(recipe: JointRecipe, index: NaturalIndex, use: PriorUse)
     const zeroPoint = recipe.zeroPoints[i] ?? null;
     if (zeroPoint !== null) blocks.push(choiceBlock(zeroPoint, index.zeroPoint(i), false, use));
     else {
-      const own = velocities.velocitiesMps.filter((_, row) => velocities.instrumentOf[row] === i).sort();
-      const centre = own[Math.floor(own.length / 2)] ?? 0;
+      const own = velocities.velocitiesMps.filter((_, row) => velocities.instrumentOf[row] === i);
+      const centre = upperMedian(own) ?? 0;
       const half = scales.zeroPointHalfWidthMps;
       blocks.push(dialBlock(uniformDial(centre - half, centre + half), index.zeroPoint(i)));
     }

@@ -2,6 +2,7 @@
  * Likelihood of one light curve: transits of all companions, baseline coefficients integrated out segment by segment,
  * extra scatter and, where asked for, correlated noise. Gradients come along.
  */
+import { upperMedian } from '../../numerics/summary.js';
 import type { LinearNuisance } from '../../numerics/linear-nuisance.js';
 import {
   LIGHT_CURVE_PARTIALS,
@@ -37,9 +38,8 @@ export function segmentNuisance(
   { start, end, design, columns }: CurveSegment,
 ): LinearNuisance {
   const rows = end - start;
-  const own = curve.flux.slice(start, end).sort();
   const priorMean = new Float64Array(columns);
-  priorMean[0] = own[Math.floor(rows / 2)]!;
+  priorMean[0] = upperMedian(curve.flux.subarray(start, end))!;
   const priorSigma = new Float64Array(columns).fill(BASELINE_WIDTH * curve.scatter);
   return { rows, columns, design, priorMean, priorSigma };
 }

@@ -5,6 +5,7 @@ import { CurveLikelihood, type CurvePoint } from './curve-likelihood.js';
 import type { EventTime } from './curve-windows.js';
 import type { CurveData } from './joint-data.js';
 import type { JointFit } from './joint-fit.js';
+import { CONJUNCTION, LOG_PERIOD } from './natural.js';
 import type { PreparedCurve } from './prepare-curve.js';
 
 export interface TimedEvent {
@@ -62,7 +63,7 @@ export function timeEvents(fit: JointFit, curves: readonly PreparedCurve[]): Tim
 function ephemerisOf(fit: JointFit, companion: number): { period: number; conjunction: number } {
   const { natural, index } = fit.density.coordinates;
   const base = index.companion(companion);
-  return { period: Math.exp(natural[base]!), conjunction: natural[base + 1]! };
+  return { period: Math.exp(natural[base + LOG_PERIOD]!), conjunction: natural[base + CONJUNCTION]! };
 }
 
 /** Events near a conjunction; what is farther away is an occultation. */

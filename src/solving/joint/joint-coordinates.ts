@@ -1,7 +1,8 @@
 /**
  * The coordinates of a joint model: position vector to natural parameters to orbit and transit coordinates, and slopes back.
  */
-import { GRAVITATIONAL_CONSTANT, SECONDS_PER_DAY, TWO_PI } from '../../orbit/constants.js';
+import { TWO_PI } from '../../orbit/constants.js';
+import { LOG_SCALED_AXIS_FACTOR } from '../../orbit/star-density.js';
 import { conjunctionLongitude } from '../../orbit/conjunction-longitude.js';
 import { ORBIT_COORDINATES } from '../../signals/keplerian.js';
 import { TRANSIT_COORDINATES } from '../../signals/transit/light-curve-kernel.js';
@@ -18,8 +19,6 @@ import {
   SHAPE,
 } from './natural.js';
 
-/** (a/R)^3 = G rho P^2/(3 pi) with rho in g/cm3 and P in days: ln of the factor. The companion's mass is neglected. */
-const LOG_AXIS_FACTOR = Math.log((GRAVITATIONAL_CONSTANT * 1000 * SECONDS_PER_DAY ** 2) / (3 * Math.PI));
 /** Orbits of companions without transits are searched up to this eccentricity. */
 const LARGEST_ECCENTRICITY = 0.985;
 
@@ -114,7 +113,7 @@ export class JointCoordinates {
         continue;
       }
       const ratio = natural[base + RADIUS_RATIO]!;
-      const logAxis = (logDensity + 2 * logPeriod + LOG_AXIS_FACTOR) / 3;
+      const logAxis = (logDensity + 2 * logPeriod + LOG_SCALED_AXIS_FACTOR) / 3;
       const impact = Math.abs(natural[base + RELATIVE_IMPACT]!) * (1 + ratio);
       const axis = Math.exp(logAxis);
       if (!(axis * (1 - e) > 1 + ratio) || !(impact * (1 + h) < axis * (1 - e * e))) return false;

@@ -3,7 +3,7 @@ import { ConvergenceError } from '../../errors.js';
 import { choleskyInPlace } from '../../numerics/linear-algebra.js';
 import { RandomStream } from '../../numerics/random.js';
 import { chainPool } from '../posterior/chain-pool.js';
-import { CONVERGENCE, sampleMode } from '../posterior/sample-mode.js';
+import { CONVERGENCE, sampleMode, samplingRecord } from '../posterior/sample-mode.js';
 import type { PosteriorOptions } from '../posterior/sample-posterior.js';
 import type { PosteriorRecord } from '../types.js';
 import { jointPriorSentences } from './joint-priors.js';
@@ -46,25 +46,13 @@ export async function sampleJoint(
     });
     const { chains, logDensities, drawsPerChain, logEvidence, logEvidenceError } = sample;
     const record: PosteriorRecord = {
-      method: 'no-U-turn Hamiltonian Monte Carlo (Hoffman & Gelman 2014), dense metric',
-      chains: CONVERGENCE.chains,
-      draws: CONVERGENCE.chains * drawsPerChain,
-      warmup: CONVERGENCE.warmup,
-      rHatMax: sample.rHatMax,
-      bulkEssMin: sample.bulkEssMin,
-      tailEssMin: sample.tailEssMin,
-      ebfmiMin: sample.ebfmiMin,
-      divergences: sample.divergences,
-      status: sample.interrupted ? 'interrupted' : sample.converged ? 'converged' : 'draw-limit',
-      logEvidence,
-      logEvidenceError,
+      ...samplingRecord(sample),
       modes: [{ periods: periodsDays, logEvidence, standardError: logEvidenceError, weight: 1 }],
       priors: jointPriorSentences(recipe),
     };
     return { density, chains, logDensities, drawsPerChain, record };
   } catch (error) {
-    // Errors of a thread arrive without their class.
-    if (!(error instanceof Error) || !error.message.includes('sampler')) throw error;
+    if (!(error instanceof ConvergenceError)) throw error;
     throw new ConvergenceError(
       'the posterior cannot be sampled from its maximum, which lies too close to a wall of what is possible; --quick gives the curvature there',
       {},

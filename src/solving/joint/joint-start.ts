@@ -1,5 +1,5 @@
 /** Starting points of a joint fit in natural parameters, from what search, mid-times and velocities have found. */
-import { GRAVITATIONAL_CONSTANT, SECONDS_PER_DAY } from '../../orbit/constants.js';
+import { LOG_SCALED_AXIS_FACTOR } from '../../orbit/star-density.js';
 import type { RelativeElements } from '../parametrisations/parametrisation.js';
 import type { Ephemeris } from './curve-windows.js';
 import type { JointRecipe } from './joint-data.js';
@@ -12,8 +12,6 @@ import {
   RELATIVE_IMPACT,
   SHAPE,
 } from './natural.js';
-
-const LOG_AXIS_FACTOR = Math.log((GRAVITATIONAL_CONSTANT * 1000 * SECONDS_PER_DAY ** 2) / (3 * Math.PI));
 
 /** What is known of one companion before the joint fit. */
 export interface CompanionStart {
@@ -39,7 +37,7 @@ export const START_LIMB: readonly [number, number] = [0.4, 0.25];
 
 /** Period at which a central transit of a star of 1 g/cm3 takes so long, days. */
 function periodOfDuration(durationDays: number): number {
-  return (Math.PI * durationDays) ** 3 * Math.exp(LOG_AXIS_FACTOR);
+  return (Math.PI * durationDays) ** 3 * Math.exp(LOG_SCALED_AXIS_FACTOR);
 }
 
 export function startFromEphemeris(ephemeris: Ephemeris, velocity: RelativeElements | null): CompanionStart {
@@ -69,7 +67,7 @@ function shapeOfDip(start: CompanionStart, relativeImpact: number): { ratio: num
     (1.5 * (1 + ratio)) / (1 - e),
     (start.periodDays / (Math.PI * durationDays)) * chord * speed,
   );
-  return { ratio, logDensity: 3 * Math.log(axis) - 2 * Math.log(start.periodDays) - LOG_AXIS_FACTOR };
+  return { ratio, logDensity: 3 * Math.log(axis) - 2 * Math.log(start.periodDays) - LOG_SCALED_AXIS_FACTOR };
 }
 
 /**

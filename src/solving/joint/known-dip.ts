@@ -3,6 +3,7 @@
  * airmass where there is one) refitted under every trial. Where nights begin or end in transit no search of a folded
  * curve would do.
  */
+import { orthonormalise, projectOut } from '../../numerics/linear-algebra.js';
 
 export interface KnownDip {
   readonly midTimeDays: number;
@@ -48,23 +49,11 @@ function prepare(run: DipRun): Prepared {
   const middle = 0.5 * (run.timesDays[0]! + run.timesDays[n - 1]!);
   const raw = [new Float64Array(n).fill(1), run.timesDays.map((time) => time - middle)];
   if (run.airmass !== null) raw.push(Float64Array.from(run.airmass));
-  const basis: Float64Array[] = [];
-  for (const column of raw) {
-    const own = column.map((value, i) => value / run.sigmas[i]!);
-    const size = Math.sqrt(own.reduce((sum, value) => sum + value * value, 0));
-    for (const other of basis) subtractProjection(own, other);
-    const norm = Math.sqrt(own.reduce((sum, value) => sum + value * value, 0));
-    if (norm > 1e-8 * size) basis.push(own.map((value) => value / norm));
-  }
-  const residual = run.flux.map((value, i) => value / run.sigmas[i]!);
-  for (const other of basis) subtractProjection(residual, other);
+  const weighted = (column: Float64Array): Float64Array => column.map((value, i) => value / run.sigmas[i]!);
+  const basis = orthonormalise(raw.map(weighted), new Float64Array(n).fill(1));
+  const residual = weighted(run.flux);
+  projectOut(residual, basis);
   return { run, residual, basis };
-}
-
-function subtractProjection(vector: Float64Array, unit: Float64Array): void {
-  let product = 0;
-  for (let i = 0; i < vector.length; i++) product += vector[i]! * unit[i]!;
-  for (let i = 0; i < vector.length; i++) vector[i]! -= product * unit[i]!;
 }
 
 /**
@@ -140,7 +129,7 @@ function noiseLeft(usable: readonly Prepared[], shift: number, duration: number,
       (value, i) =>
         value + (depth * trapezoid(run.timesDays[i]! - run.midTimeDays - shift, duration)) / run.sigmas[i]!,
     );
-    for (const unit of basis) subtractProjection(left, unit);
+    projectOut(left, basis);
     for (const value of left) chiSquare += value * value;
     count += left.length - basis.length;
   }

@@ -1,4 +1,5 @@
 /** Which companions the joint model has, and what is known of each before it is fitted. */
+import { companionLetter } from '../../observations/letters.js';
 import type { Case } from '../../observations/types.js';
 import { conjunctionDelayDays } from '../../orbit/conversions.js';
 import {
@@ -16,10 +17,6 @@ import type { SettledVelocities } from './velocity-part.js';
 
 /** Semi-amplitude from which a pull is fitted that the velocities alone do not show, in scales of its prior. */
 const START_PULL = 10;
-
-function letterAfter(index: number): string {
-  return String.fromCharCode('b'.charCodeAt(0) + index);
-}
 
 export function planCompanions(
   theCase: Case,
@@ -54,8 +51,8 @@ export function planCompanions(
   );
   const freeLetter = (): string => {
     let place = 0;
-    while (taken.has(letterAfter(place))) place++;
-    return letterAfter(place);
+    while (taken.has(companionLetter(place))) place++;
+    return companionLetter(place);
   };
   const planned = portable.companions.map((companion, c) => {
     const found = founds[c] ?? null;

@@ -1,5 +1,5 @@
 /** A light-curve table as it enters the fit: points near events, averaged where they are many, with a baseline per segment. */
-import { standardDeviation } from '../../numerics/summary.js';
+import { standardDeviation, upperMedian } from '../../numerics/summary.js';
 import type { LightCurveTable } from '../../observations/photometry-types.js';
 import { daysOf, windowsOf, type Ephemeris, type Window } from './curve-windows.js';
 import type { CurveData, CurveSegment } from './joint-data.js';
@@ -53,7 +53,7 @@ export function prepareCurve(
   // One exposure with the same spread in time: points at equal steps, each spread over its own exposure.
   const exposureDays = Math.hypot(table.exposureDays, step * Math.sqrt(group * group - 1));
   const segments = selected.windows.map((window) => segmentOf(selected, window, terms));
-  const typicalSigma = median(selected.sigmas);
+  const typicalSigma = upperMedian(selected.sigmas) ?? 0;
   const data: CurveData = {
     name: table.name,
     timesDays: selected.timesDays,
@@ -91,17 +91,12 @@ function selectionSentence(
   return `${count} of ${table.used} points: those within 1.5 durations of an event (${runs})${averaging}`;
 }
 
-function median(values: Float64Array): number {
-  const sorted = Float64Array.from(values).sort();
-  return sorted[Math.floor(sorted.length / 2)] ?? 0;
-}
-
 /** Usual distance of neighbouring points within the windows. */
 function typicalStep(timesDays: Float64Array, windows: readonly Window[]): number {
   const steps: number[] = [];
   for (const { start, end } of windows)
     for (let i = start + 1; i < end; i++) steps.push(timesDays[i]! - timesDays[i - 1]!);
-  return median(Float64Array.from(steps));
+  return upperMedian(steps) ?? 0;
 }
 
 function groupSize(

@@ -14,6 +14,7 @@ import {
 } from './joint-recipe.js';
 import type { NoiseStart } from './joint-start.js';
 import type { PreparedCurve } from './prepare-curve.js';
+import { SHAPE } from './natural.js';
 import { refinedBy } from './plan-companions.js';
 import { withOtherShapes, withShiftedEphemeris } from './restarts.js';
 
@@ -117,7 +118,7 @@ function isShapeOpen({ theCase, sets, velocity }: JointGiven, companion: Planned
 /** The natural parameters of a fit, with a small eccentricity where one is to grow. */
 function withShape(fit: JointFit, companion: number, circular: boolean): Float64Array {
   const natural = Float64Array.from(fit.natural);
-  const at = fit.density.coordinates.index.companion(companion) + 2;
+  const at = fit.density.coordinates.index.companion(companion) + SHAPE;
   natural[at] = circular ? 0 : START_ECCENTRICITY;
   natural[at + 1] = circular ? 0 : START_ECCENTRICITY;
   return natural;

@@ -1,5 +1,6 @@
 /** Which companions transit, and when: from mid-times, from the case, and from the light curves themselves. */
 import { InputDataError } from '../../errors.js';
+import { companionLetter } from '../../observations/letters.js';
 import type { LightCurveTable, MidTimeTable, Observations } from '../../observations/photometry-types.js';
 import type { Case, ElementChoice } from '../../observations/types.js';
 import { dipDataOf } from '../dips/dip-data.js';
@@ -206,7 +207,7 @@ function isSame(candidate: DipCandidate, known: Known): boolean {
 }
 
 function letterOf(theCase: Case, index: number): string {
-  return listed(theCase)[index]?.letter ?? String.fromCharCode('b'.charCodeAt(0) + index);
+  return listed(theCase)[index]?.letter ?? companionLetter(index);
 }
 
 function knownTransit(

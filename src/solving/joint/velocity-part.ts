@@ -1,4 +1,5 @@
 /** What velocities say beside transits: companions with known ephemerides listed first, others searched for. */
+import { companionLetter } from '../../observations/letters.js';
 import type { Case, CompanionChoice, ElementChoice, VelocitySet } from '../../observations/types.js';
 import { conjunctionDelayDays } from '../../orbit/conversions.js';
 import type { PortablePoint } from '../model-builder.js';
@@ -129,7 +130,7 @@ export function settleVelocities(
   if (single !== undefined) {
     const owner = ownerOf(single, settled, portable, founds, theCase, seed);
     if (owner !== null) {
-      const letter = String.fromCharCode('b'.charCodeAt(0) + owner);
+      const letter = companionLetter(owner);
       const isTaken = transits.some((other) => other !== single && other.ephemeris.letter === letter);
       founds[owner] = {
         ...single,

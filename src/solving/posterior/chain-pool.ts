@@ -5,6 +5,7 @@
 import { existsSync } from 'node:fs';
 import { fileURLToPath } from 'node:url';
 import { Worker } from 'node:worker_threads';
+import { ConvergenceError } from '../../errors.js';
 import { ChainRunner, type ChainOutput, type ChainRecipe } from './chain-job.js';
 import type { WorkerAnswer, WorkerRequest } from './chain-worker.js';
 
@@ -92,6 +93,11 @@ class ThreadPool implements ChainPool {
               worker.off('error', onError);
             };
             const onMessage = (answer: WorkerAnswer): void => {
+              if (answer.kind === 'failed') {
+                finish();
+                reject(new ConvergenceError(answer.message, answer.details));
+                return;
+              }
               receive(answer);
               if (--waiting > 0) return;
               finish();

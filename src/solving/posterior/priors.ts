@@ -1,5 +1,6 @@
 /** The priors of the posterior, stated in the trade's elements. */
 import type { Case } from '../../observations/types.js';
+import { upperMedian } from '../../numerics/summary.js';
 import type { VelocityData } from '../../signals/velocity-term.js';
 
 /** Scales and bounds of the default priors. All are proper. */
@@ -25,11 +26,6 @@ export interface PriorScales {
 /** A period may run beyond the search range by this factor in the posterior: partial orbits have long tails. */
 export const POSTERIOR_PERIOD_REACH = 20;
 
-function median(values: Float64Array): number {
-  const sorted = Float64Array.from(values).sort();
-  return sorted[Math.floor(sorted.length / 2)] ?? 1;
-}
-
 /** Default priors for some data. Widths follow from the errors and the range of the velocities, which only sets their order. */
 export function priorScales(
   data: VelocityData,
@@ -37,7 +33,7 @@ export function priorScales(
   range: { readonly shortestPeriodDays: number; readonly longestPeriodDays: number },
   starRadiusAtOneDay: number,
 ): PriorScales {
-  const sigma = median(data.sigmasMps);
+  const sigma = upperMedian(data.sigmasMps) ?? 1;
   let widest = sigma;
   for (let instrument = 0; instrument < data.instrumentCount; instrument++) {
     const own = data.velocitiesMps.filter((_, i) => data.instrumentOf[i] === instrument);

@@ -5,6 +5,7 @@ import { RandomStream } from '../../numerics/random.js';
 import type { ChainOutput } from './chain-job.js';
 import type { ChainRecipe } from './chain-job.js';
 import type { ChainPool } from './chain-pool.js';
+import type { PosteriorRecord } from '../types.js';
 import type { SampledDensity } from './sampled-density.js';
 import { curvatureOfDensity } from './density-curvature.js';
 
@@ -163,5 +164,25 @@ export async function sampleMode<D extends SampledDensity>(
     interrupted,
     logEvidence: evidence.logEvidence,
     logEvidenceError: evidence.standardError,
+  };
+}
+
+/** What every record of a sampled posterior says of its reported mode. */
+export function samplingRecord(
+  sample: ModeSample<SampledDensity>,
+): Omit<PosteriorRecord, 'modes' | 'priors'> {
+  return {
+    method: 'no-U-turn Hamiltonian Monte Carlo (Hoffman & Gelman 2014), dense metric',
+    chains: CONVERGENCE.chains,
+    draws: CONVERGENCE.chains * sample.drawsPerChain,
+    warmup: CONVERGENCE.warmup,
+    rHatMax: sample.rHatMax,
+    bulkEssMin: sample.bulkEssMin,
+    tailEssMin: sample.tailEssMin,
+    ebfmiMin: sample.ebfmiMin,
+    divergences: sample.divergences,
+    status: sample.interrupted ? 'interrupted' : sample.converged ? 'converged' : 'draw-limit',
+    logEvidence: sample.logEvidence,
+    logEvidenceError: sample.logEvidenceError,
   };
 }

@@ -16,7 +16,7 @@ import { drawStars, passagesNearData, starOf, type Sampled } from '../uncertaint
 import { chainPool } from './chain-pool.js';
 import { densityOf, type DensityRecipe } from './chain-job.js';
 import { priorScales, priorSentences, type PriorScales } from './priors.js';
-import { CONVERGENCE, sampleMode, type ModeSample } from './sample-mode.js';
+import { CONVERGENCE, sampleMode, samplingRecord, type ModeSample } from './sample-mode.js';
 import { marginalsOf, type CompanionMarginals } from './marginals.js';
 import type { PosteriorDensity } from './posterior-density.js';
 import { posteriorDraws } from './posterior-draws.js';
@@ -121,24 +121,9 @@ export async function samplePosterior(
   const reported = samples[order[0]!]!;
   const { sample } = reported;
   const record: PosteriorRecord = {
-    method: 'no-U-turn Hamiltonian Monte Carlo (Hoffman & Gelman 2014), dense metric',
-    chains: CONVERGENCE.chains,
-    draws: CONVERGENCE.chains * sample.drawsPerChain,
-    warmup: CONVERGENCE.warmup,
-    rHatMax: sample.rHatMax,
-    bulkEssMin: sample.bulkEssMin,
-    tailEssMin: sample.tailEssMin,
-    ebfmiMin: sample.ebfmiMin,
-    divergences: sample.divergences,
+    ...samplingRecord(sample),
     // Modes that were not reached leave the weights incomplete, however well the first one was sampled.
-    status:
-      samples.length < fits.length || sample.interrupted
-        ? 'interrupted'
-        : sample.converged
-          ? 'converged'
-          : 'draw-limit',
-    logEvidence: sample.logEvidence,
-    logEvidenceError: sample.logEvidenceError,
+    ...(samples.length < fits.length ? { status: 'interrupted' as const } : {}),
     modes: order.map((i) => ({
       periods: explorer.portable(samples[i]!.planned).companions.map((companion) => companion.periodDays),
       logEvidence: samples[i]!.sample.logEvidence,

@@ -1,5 +1,6 @@
 /** What `timing` finds. `TimingRecord` is `timing.json`, version 1: it may grow keys, but the meaning of a key never changes. */
 import type { TimeScale } from '../../observations/types.js';
+import type { ProvenanceRecord } from '../provenance.js';
 import type { Quantity } from '../types.js';
 import type { TimingModelName } from './model-forms.js';
 
@@ -114,19 +115,7 @@ export interface TimingRecord {
   }[];
   readonly assumptions: readonly string[];
   readonly warnings: readonly { readonly code: string; readonly message: string }[];
-  readonly provenance: {
-    readonly program: 'tugline';
-    readonly version: string;
-    readonly node: string;
-    readonly seed: number;
-    readonly command: readonly string[];
-    readonly inputs: readonly {
-      readonly path: string;
-      readonly sha256: string;
-      readonly rows: number;
-      readonly used: number;
-    }[];
-  };
+  readonly provenance: ProvenanceRecord;
 }
 
 /** A model along the cycles. Arrays of one length. */
