@@ -1,73 +1,13 @@
-import { describe, expect, it } from 'vitest';
 import fc from 'fast-check';
+import { describe, expect, it } from 'vitest';
 import { DampedOscillatorProcess } from '../../../src/numerics/gaussian-process/damped-oscillator-process.js';
-import {
-  covarianceAt,
-  TERM_SIZE,
-  writeOscillation,
-} from '../../../src/numerics/gaussian-process/oscillator-terms.js';
+import { TERM_SIZE } from '../../../src/numerics/gaussian-process/oscillator-terms.js';
 import { RandomStream } from '../../../src/numerics/random.js';
 import { expectWithin } from '../../support/expect-within.js';
-import { DenseProcess, oscillationAt, slopeOf, type Oscillation } from './dense.js';
+import { DenseProcess, oscillationAt, slopeOf } from './dense.js';
+import { randomCase, SEEDS, termsOf } from './random-process.js';
 
 const DENSE = { rel: 1e-11, unit: '1', why: 'both sides round; worst seen 5e-14' };
-
-/** Terms that are covariances, from fast and strongly damped to slow and weakly damped. */
-function randomOscillations(random: RandomStream, count: number): Oscillation[] {
-  return Array.from({ length: count }, () => {
-    const a = Math.exp(random.normal());
-    const c = Math.exp(2 * random.normal() - 1);
-    const d = Math.exp(2 * random.normal());
-    return { a, c, d, b: ((2 * random.uniform() - 1) * a * c) / d };
-  });
-}
-
-function termsOf(oscillations: readonly Oscillation[]): Float64Array {
-  const terms = new Float64Array(oscillations.length * TERM_SIZE);
-  oscillations.forEach((oscillation, k) => {
-    writeOscillation(terms, k, oscillation);
-  });
-  return terms;
-}
-
-/** Unequal spacing with gaps of 0, 1e-6 and 1000 among usual ones. */
-function raggedTimes(random: RandomStream, n: number): Float64Array {
-  const times = new Float64Array(n);
-  times[0] = -3;
-  for (let i = 1; i < n; i++) {
-    const kind = Math.floor(7 * random.uniform());
-    times[i] =
-      times[i - 1]! +
-      (kind === 0 ? 1e-6 : kind === 1 ? 1000 : kind === 2 && i % 2 === 0 ? 0 : random.uniform());
-  }
-  return times;
-}
-
-function randomCase(seed: number): {
-  times: Float64Array;
-  diagonal: Float64Array;
-  residuals: Float64Array;
-  oscillations: Oscillation[];
-  terms: Float64Array;
-  dense: DenseProcess;
-  process: DampedOscillatorProcess;
-} {
-  const random = RandomStream.fromSeed(seed);
-  const n = 2 + Math.floor(58 * random.uniform());
-  const times = raggedTimes(random, n);
-  const diagonal = Float64Array.from({ length: n }, () => Math.exp(random.normal() - 3));
-  const residuals = Float64Array.from({ length: n }, () => random.normal());
-  const oscillations = randomOscillations(random, 1 + (seed % 3));
-  const terms = termsOf(oscillations);
-  const dense = new DenseProcess(times, diagonal, (lag) =>
-    oscillations.reduce((sum, oscillation) => sum + oscillationAt(oscillation, lag), 0),
-  );
-  const process = new DampedOscillatorProcess(times, oscillations.length);
-  expect(process.factor(terms, diagonal)).toBe(true);
-  return { times, diagonal, residuals, oscillations, terms, dense, process };
-}
-
-const SEEDS = Array.from({ length: 40 }, (_, i) => i + 1);
 
 describe('a process of damped oscillators', () => {
   it('has the determinant, the solutions and the likelihood of the dense matrix', () => {
@@ -143,75 +83,6 @@ describe('a process of damped oscillators', () => {
         }
       });
     }
-  });
-
-  it('predicts itself as the dense matrices do, at the data, between, before and after them', () => {
-    for (const seed of SEEDS.slice(0, 20)) {
-      const { times, diagonal, residuals, terms, dense, process } = randomCase(seed);
-      const { n } = dense;
-      const alpha = dense.solve(residuals);
-      const mean = (t: number): number =>
-        alpha.reduce(
-          (sum, value, i) => sum + value * covarianceAt(terms, process.termCount, t - times[i]!),
-          0,
-        );
-      const here = new Float64Array(n);
-      const solved = new Float64Array(n);
-      process.solve(residuals, solved);
-      process.predictHere(residuals, solved, here);
-      const scale =
-        alpha.reduce((sum, value) => sum + Math.abs(value), 0) * covarianceAt(terms, process.termCount, 0);
-      const bound = { abs: 1e-12 * scale, unit: '1', why: 'of the sum of the absolute contributions' };
-      here.forEach((value, i) => {
-        expectWithin(value, mean(times[i]!), bound);
-      });
-      const elsewhere = Float64Array.from([
-        times[0]! - 2,
-        times[n - 1]! + 0.3,
-        times[n - 1]! + 1e5,
-        ...times,
-        ...times.map((t) => t + 0.21),
-      ]);
-      process.predict(solved, elsewhere).forEach((value, i) => {
-        expectWithin(value, mean(elsewhere[i]!), bound);
-      });
-      const sigmas = new Float64Array(n);
-      process.predictSigmaHere(sigmas);
-      const inverse = dense.inverseDiagonal();
-      sigmas.forEach((sigma, i) => {
-        expectWithin(sigma ** 2, diagonal[i]! - diagonal[i]! ** 2 * inverse[i]!, {
-          abs: 1e-11,
-          unit: '1',
-          why: 'variances are of order 1 here',
-        });
-      });
-    }
-  });
-
-  it('colours unit noise with a root of its covariance, and whitens it back', () => {
-    const { dense, process } = randomCase(8);
-    const { n } = dense;
-    const root = Array.from({ length: n }, (_, j) => {
-      const column = new Float64Array(n);
-      column[j] = 1;
-      process.colour(column, column);
-      return column;
-    });
-    for (let i = 0; i < n; i++)
-      for (let j = 0; j < n; j++)
-        expectWithin(
-          root.reduce((sum, column) => sum + column[i]! * column[j]!, 0),
-          dense.matrix[i * n + j]!,
-          { abs: 1e-12, unit: '1', why: 'elements are of order 1; worst seen 2e-15' },
-        );
-    const random = RandomStream.fromSeed(3);
-    const noise = Float64Array.from({ length: n }, () => random.normal());
-    const back = new Float64Array(n);
-    process.colour(noise, back);
-    process.whiten(back, back);
-    noise.forEach((value, i) => {
-      expectWithin(back[i]!, value, { abs: 1e-11, unit: '1', why: 'round trip' });
-    });
   });
 
   it('takes an exponential without white noise for the autoregressive series that it is', () => {

@@ -1,91 +1,14 @@
 import { describe, expect, it } from 'vitest';
 import {
-  meanFromTrueAnomaly,
   occultationContacts,
   RAD_PER_DEG,
   transitContacts,
   transitDistance,
 } from '../../../src/orbit/index.js';
-import {
-  LIGHT_CURVE_PARTIALS,
-  LightCurveKernel,
-  TRANSIT_COORDINATES,
-} from '../../../src/signals/transit/light-curve-kernel.js';
+import { LIGHT_CURVE_PARTIALS } from '../../../src/signals/transit/light-curve-kernel.js';
 import exposures from '../../reference/transit/exposure.json' with { type: 'json' };
 import { expectWithin } from '../../support/expect-within.js';
-
-const NAMES = ['ln P', 'lambda0', 'k', 'h', 'radius ratio', 'b', 'ln a/R', 'u1', 'u2', 'occultation depth'];
-
-interface Model {
-  readonly coordinates: readonly number[];
-  readonly u1: number;
-  readonly u2: number;
-  readonly depth: number;
-}
-
-interface Setting {
-  readonly times: Float64Array;
-  readonly exposure?: number;
-  readonly light?: number;
-}
-
-function model(e: number, omega: number, more: Partial<Record<string, number>> = {}): Model {
-  const { period = 3, ratio = 0.1, b = 0.3, axis = 8, longitude = Math.PI / 2, depth = 1e-3 } = more;
-  return {
-    coordinates: [
-      Math.log(period),
-      longitude,
-      e * Math.cos(omega),
-      e * Math.sin(omega),
-      ratio,
-      b,
-      Math.log(axis),
-    ],
-    u1: 0.4,
-    u2: 0.3,
-    depth,
-  };
-}
-
-function evaluated(one: Model, { times, exposure = 0, light = 0 }: Setting): LightCurveKernel {
-  const kernel = new LightCurveKernel({
-    timesDays: times,
-    exposureDays: exposure,
-    starRadiusLightDays: light,
-  });
-  const coordinates = Float64Array.of(NaN, ...one.coordinates);
-  expect(kernel.evaluate(coordinates, 1, one.u1, one.u2, one.depth, true)).toBe(true);
-  return kernel;
-}
-
-/** Loss and partial derivatives at every time. */
-function everywhere(one: Model, setting: Setting): { loss: Float64Array; partials: Float64Array } {
-  const kernel = evaluated(one, setting);
-  const loss = new Float64Array(setting.times.length);
-  const partials = new Float64Array(setting.times.length * LIGHT_CURVE_PARTIALS);
-  for (let entry = 0; entry < kernel.touchedCount; entry++) {
-    const i = kernel.touched[entry]!;
-    loss[i] = kernel.loss[entry]!;
-    const row = entry * LIGHT_CURVE_PARTIALS;
-    partials.set(kernel.partials.subarray(row, row + LIGHT_CURVE_PARTIALS), i * LIGHT_CURVE_PARTIALS);
-  }
-  return { loss, partials };
-}
-
-function moved(one: Model, which: number, step: number): Model {
-  const values = [...one.coordinates, one.u1, one.u2, one.depth];
-  values[which]! += step;
-  const [u1, u2, depth] = values.slice(TRANSIT_COORDINATES) as [number, number, number];
-  return { coordinates: values.slice(0, TRANSIT_COORDINATES), u1, u2, depth };
-}
-
-/** Inferior conjunction of `model(e, omega)` with a period of 3 d. */
-function conjunctionTime(e: number, omega: number, longitude: number = Math.PI / 2): number {
-  return ((meanFromTrueAnomaly(Math.PI / 2 - omega, e) + omega - longitude) * 3) / (2 * Math.PI);
-}
-
-const grid = (from: number, to: number, count: number): Float64Array =>
-  Float64Array.from({ length: count }, (_, i) => from + ((to - from) * i) / (count - 1));
+import { conjunctionTime, evaluated, everywhere, grid, model, NAMES } from './light-curve-models.js';
 
 describe('instantaneous loss', () => {
   // Circular, P = 3 d, a/R = 8, b = 0.3, k = 0.1, u = 0.4, 0.3: flux by 30-digit quadrature at the separations of the times
@@ -172,77 +95,6 @@ describe('instantaneous loss', () => {
     loss.forEach((value, i) => {
       expectWithin(mirrored[i]!, value, { abs: 1e-15, unit: 'flux', why: 'rounding of the longitude' });
     });
-  });
-});
-
-describe('partial derivatives agree with difference quotients', () => {
-  const settings: readonly (readonly [string, Model, Omit<Setting, 'times'>])[] = [
-    ['circular', model(0, 0), {}],
-    ['eccentric', model(0.3, 1), {}],
-    ['eccentric, light time', model(0.3, 1), { light: 1e-4 }],
-    ['apastron in front, grazing', model(0.5, 4.4, { b: 0.95 }), {}],
-    ['large companion', model(0.1, 2, { ratio: 1.4, axis: 12 }), {}],
-    ['circular, exposures of 30 min, light time', model(0, 0), { exposure: 0.0208, light: 3e-5 }],
-    ['eccentric, exposures of 30 min', model(0.6, 4), { exposure: 0.0208 }],
-  ];
-
-  it.each(settings)('%s', (_, one, setting) => {
-    const times = grid(-3.05, 3.05, 700);
-    const got = everywhere(one, { ...setting, times });
-    const outside = (shift: number): boolean[] => {
-      const touched = everywhere(one, { ...setting, times: times.map((t) => t + shift) }).loss;
-      return Array.from(touched, (value) => value === 0);
-    };
-    // Within 1e-4 d of a contact a quotient of an instantaneous loss is no derivative: those points are left out.
-    const [before, after] = [outside(-1e-4), outside(1e-4)];
-    let compared = 0;
-    for (let which = 0; which < LIGHT_CURVE_PARTIALS; which++) {
-      const step = which === 0 ? 1e-6 : 1e-5;
-      const [above, below] = [step, -step].map(
-        (h) => everywhere(moved(one, which, h), { ...setting, times }).loss,
-      );
-      const size = got.partials.reduce(
-        (most, value, at) => (at % LIGHT_CURVE_PARTIALS === which ? Math.max(most, Math.abs(value)) : most),
-        0,
-      );
-      expect(size).toBeGreaterThan(0);
-      times.forEach((t, i) => {
-        if (before[i] !== after[i]) return;
-        compared++;
-        const quotient = (above![i]! - below![i]!) / (2 * step);
-        expectWithin(got.partials[i * LIGHT_CURVE_PARTIALS + which]!, quotient, {
-          abs: 2e-3 * size,
-          unit: 'flux',
-          why: `second-order error of the quotient near inner contacts, ${NAMES[which]!} at t = ${t}`,
-        });
-      });
-    }
-    expect(compared).toBeGreaterThan(6000);
-  });
-
-  it('to seven digits in the smooth middle', () => {
-    const times = grid(-0.03, 0.03, 13);
-    const one = model(0.25, 5.1, { longitude: 1.35 });
-    const conjunction = conjunctionTime(0.25, 5.1, 1.35);
-    const setting = { times: times.map((t) => t + conjunction), light: 2e-5 };
-    const got = everywhere(one, setting);
-    let nonzero = 0;
-    for (let which = 0; which < 9; which++) {
-      const central = (h: number, i: number): number =>
-        (everywhere(moved(one, which, h), setting).loss[i]! -
-          everywhere(moved(one, which, -h), setting).loss[i]!) /
-        (2 * h);
-      for (const i of [0, 5, 12]) {
-        const want = (4 * central(5e-5, i) - central(1e-4, i)) / 3;
-        if (Math.abs(want) > 1e-6) nonzero++;
-        expectWithin(got.partials[i * LIGHT_CURVE_PARTIALS + which]!, want, {
-          abs: 1e-7 * Math.max(1e-3, Math.abs(want)),
-          unit: 'flux',
-          why: `rounding of the quotient, ${NAMES[which]!}`,
-        });
-      }
-    }
-    expect(nonzero).toBeGreaterThan(20);
   });
 });
 
@@ -351,82 +203,6 @@ describe('exposures', () => {
       });
     });
   });
-});
-
-describe('domain', () => {
-  const times = grid(-1, 1, 50);
-  const outcome = (which: number, value: number): boolean => {
-    const kernel = new LightCurveKernel({ timesDays: times, exposureDays: 0, starRadiusLightDays: 0 });
-    const one = moved(model(0.1, 1), which, 0);
-    const values = [...one.coordinates, one.u1, one.u2, one.depth];
-    values[which] = value;
-    const [u1, u2, depth] = values.slice(TRANSIT_COORDINATES) as [number, number, number];
-    const result = kernel.evaluate(Float64Array.from(values), 0, u1, u2, depth, true);
-    if (!result) expect(kernel.touchedCount).toBe(0);
-    return result;
-  };
-
-  it('false for what is not finite', () => {
-    for (let which = 0; which < LIGHT_CURVE_PARTIALS; which++)
-      for (const value of [NaN, Infinity]) expect(outcome(which, value)).toBe(false);
-  });
-
-  it('false for what cannot be', () => {
-    expect(outcome(2, 1)).toBe(false); // e >= 1
-    expect(outcome(3, 0.87)).toBe(false); // bodies touch at periastron
-    expect(outcome(4, -0.1)).toBe(false);
-    expect(outcome(4, 6.5)).toBe(false); // bodies touch
-    expect(outcome(5, 8)).toBe(false); // b beyond the orbit
-    expect(outcome(6, 0)).toBe(false);
-    expect(outcome(7, 3)).toBe(false); // a star without light
-  });
-
-  it('true up to there', () => {
-    expect(outcome(4, 2)).toBe(true);
-    expect(outcome(5, -0.4)).toBe(true);
-    expect(outcome(9, -1e-3)).toBe(true);
-  });
-});
-
-it('random models up to the edges of the domain: finite, between nothing and everything', () => {
-  let state = 2718;
-  const next = (): number => (state = (state * 48_271) % 2_147_483_647) / 2_147_483_647;
-  let [evaluations, touched] = [0, 0];
-  const times = grid(-40, 40, 200);
-  const kernels = [0, 0.02, 3].map(
-    (exposureDays) =>
-      new LightCurveKernel({
-        timesDays: times,
-        exposureDays,
-        starRadiusLightDays: exposureDays === 0 ? 0 : 3e-5,
-      }),
-  );
-  for (let trial = 0; trial < 1200; trial++) {
-    const kernel = kernels[trial % 3]!;
-    const ratio = next() < 0.1 ? 1 : 2 * next() ** 3;
-    const e = next() < 0.2 ? 0 : 1 - 10 ** (-3 * next());
-    const omega = 2 * Math.PI * next();
-    const axis = ((1 + ratio) / (1 - e)) * (1 + 10 ** (-6 + 7 * next()));
-    const b = next() < 0.2 ? Math.abs(1 - ratio) : next() < 0.1 ? 0 : (1 + ratio) * next();
-    const coordinates = Float64Array.of(
-      Math.log(0.5 + 30 * next()),
-      7 * next(),
-      e * Math.cos(omega),
-      e * Math.sin(omega),
-      ratio,
-      b,
-      Math.log(axis),
-    );
-    if (!kernel.evaluate(coordinates, 0, next(), 0, 1e-3, true)) continue;
-    evaluations++;
-    touched += kernel.touchedCount;
-    const count = kernel.touchedCount;
-    const sums = kernel.partials.subarray(0, count * LIGHT_CURVE_PARTIALS);
-    expect(sums.every(Number.isFinite)).toBe(true);
-    expect(kernel.loss.subarray(0, count).every((value) => value > -1e-15 && value <= 1.001)).toBe(true);
-  }
-  expect(evaluations).toBeGreaterThan(900);
-  expect(touched).toBeGreaterThan(10_000);
 });
 
 it('a published orbit, impact parameter from the inclination: durations as by contacts', () => {
