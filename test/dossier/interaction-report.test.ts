@@ -1,5 +1,6 @@
 import { beforeAll, describe, expect, it } from 'vitest';
-import { interactionCharts, renderInteractionCharts } from '../../src/dossier/charts/interaction-chart.js';
+import { interactionCharts } from '../../src/dossier/charts/interaction-chart.js';
+import { renderDrawings } from '../../src/dossier/charts/render-charts.js';
 import { interactionBlocks, interactionTable } from '../../src/dossier/interaction-report.js';
 import { fitInteraction } from '../../src/solving/timing/interaction-fit.js';
 import type { InteractionFit, InteractionTable } from '../../src/solving/timing/interaction-types.js';
@@ -55,8 +56,8 @@ describe('chart of interacting orbits', () => {
     const scales = drawings[0]!.configure().options!.scales as Record<string, { title: { text: string } }>;
     expect(scales['y']!.title.text).toBe('O − C (min)');
     expect(scales['x']!.title.text).toMatch(/^BJD TDB − 24580\d\d \(d\)|^BJD TDB − 2457\d\d\d \(d\)/);
-    const first = await renderInteractionCharts(fit, tables, 'Invented');
-    const again = await renderInteractionCharts(fit, tables, 'Invented');
+    const first = await renderDrawings(interactionCharts(fit, tables, 'Invented', 'BJD TDB'));
+    const again = await renderDrawings(interactionCharts(fit, tables, 'Invented', 'BJD TDB'));
     expect(first.map(({ name }) => name).sort()).toEqual(
       ['interaction-b.png', 'interaction-b.svg', 'interaction-c.png', 'interaction-c.svg'].sort(),
     );

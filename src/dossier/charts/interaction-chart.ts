@@ -3,7 +3,7 @@ import type { ChartConfiguration, ChartDataset } from 'chart.js';
 import type { InteractionFit, InteractionTable } from '../../solving/timing/interaction-types.js';
 import { axis, leftAxisWidthPx, paddedRange } from './axes.js';
 import { TWO_COLUMNS_MM } from './chart-drawing.js';
-import type { ChartDrawing, ChartFile } from './chart-drawing.js';
+import type { ChartDrawing } from './chart-drawing.js';
 import { curveDataset, curves } from './curves.js';
 import { errorBars } from './error-bars.js';
 import type { ErrorBarSeries } from './error-bars.js';
@@ -11,7 +11,6 @@ import { heading, legend } from './headings.js';
 import { cleanLabel, fileLetter, fixedText, significantText } from './labels.js';
 import { panelFrames } from './panel-frames.js';
 import { grow, rangeWithBars } from './ranges.js';
-import { renderDrawings } from './render-charts.js';
 import { BAND_COLOUR, commonOptions, markerRadius, markerStyle, MODEL_COLOUR, tint } from './style.js';
 import { timeOffset } from './velocities-chart.js';
 import { markedPoints, zeroLine } from './panel-parts.js';
@@ -35,16 +34,6 @@ export function interactionCharts(
   timeLabel = 'BJD TDB',
 ): ChartDrawing[] {
   return fit.predictions.map((_, index) => interactionChart(fit, tables, target, timeLabel, index));
-}
-
-/** Each chart as PNG and as SVG. */
-export function renderInteractionCharts(
-  fit: InteractionFit,
-  tables: readonly InteractionTable[],
-  target: string,
-  timeLabel = 'BJD TDB',
-): Promise<ChartFile[]> {
-  return renderDrawings(interactionCharts(fit, tables, target, timeLabel));
 }
 
 function interactionChart(

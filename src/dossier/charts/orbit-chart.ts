@@ -17,7 +17,10 @@ const TICKS = 5;
 
 /** `orbit-b`, `orbit-c` ... and `orbits`. */
 export function orbitCharts(solved: Solved): ChartDrawing[] {
-  const indices = solved.best.companions.map((_, index) => index);
+  // Of an orbit without a period nothing is known that could be drawn.
+  const indices = solved.best.companions.flatMap((_, index) =>
+    solved.record.companions[index]?.elements.period.value === null ? [] : [index],
+  );
   const single = indices.map((index) => orbitChart(solved, [index]));
   return indices.length > 1 ? [...single, orbitChart(solved, indices)] : single;
 }

@@ -42,10 +42,11 @@ export function transitChart(solved: Solved, companion: number): ChartDrawing | 
   const widthMm = shown.length === 1 ? ONE_COLUMN_MM : TWO_COLUMNS_MM;
   const rowPx = FLUX_PX + RESIDUALS_PX + BOTTOM_PX;
   const heightPx = HEADING_PX + rows * rowPx + (rows - 1) * ROW_GAP_PX + 1;
-  const period = significantText(own.elements.period.value ?? NaN, 6);
+  const { value: periodDays } = own.elements.period;
+  const period = periodDays === null ? 'period unknown' : `P = ${significantText(periodDays, 6)} d`;
   const target = cleanLabel(record.target, 19);
   const name = target.endsWith('…') || target === '' ? 'companion' : target;
-  const headingText = `${name} ${letter}, P = ${period} d`;
+  const headingText = `${name} ${letter}, ${period}`;
   let prepared: BandPanels | null = null;
   const sheet = { widthPx: Math.floor(widthMm * CSS_PX_PER_MM), topPx: HEADING_PX, columns };
   const get = (): BandPanels => (prepared ??= bandPanels(solved, own.letter, events, shown, sheet));
@@ -56,7 +57,7 @@ export function transitChart(solved: Solved, companion: number): ChartDrawing | 
     heightMm: heightPx / CSS_PX_PER_MM,
     title: `Transits of companion ${letter} of ${cleanLabel(record.target, 80)}`,
     caption: [
-      `Transits of companion ${letter} put on top of one another (period ${period} d), over their baselines${record.companions.length > 1 ? ' and without the other companions' : ''}${shown.length > 1 ? '; one panel per band' : ''}. Residuals below.`,
+      `Transits of companion ${letter} put on top of one another (${period.replace('P =', 'period')}), over their baselines${record.companions.length > 1 ? ' and without the other companions' : ''}${shown.length > 1 ? '; one panel per band' : ''}. Residuals below.`,
       crowded ? `Panels of more than ${MOST_DOTS} points show their density.` : '',
       binMinutes > 0
         ? `Circles: weighted means in bins of ${significantText(binMinutes, 2)} min, taken of the residuals and set on the model.`

@@ -63,7 +63,11 @@ function orbitSentence(companion: CompanionRecord, { record: { star }, posterior
     elements.semiAmplitude.value === null
       ? `; how it moves the star is ${shown(elements.semiAmplitude)}`
       : `, and moves the star with a semi-amplitude of ${shown(elements.semiAmplitude)}`;
-  return `Companion ${letter} goes round in ${shown(elements.period)} ${shape}${pull}. ${mass}`;
+  const period =
+    elements.period.value === null
+      ? `has a period that is ${shown(elements.period)}`
+      : `goes round in ${shown(elements.period)} ${shape}`;
+  return `Companion ${letter} ${period}${pull}. ${mass}`;
 }
 
 function quantitiesTable(companion: CompanionRecord, { posterior }: Solved): string {

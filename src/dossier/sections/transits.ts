@@ -38,8 +38,10 @@ function transitSentences(companion: CompanionRecord, { record, posterior }: Sol
     `**Companion ${letter}** takes ${shown(derived.midTransitDepth)} of the light in the middle of its transit` +
       `${first === undefined || (record.photometry?.bands.length ?? 0) < 2 ? '' : ` (band ${escapeMarkdown(first.name)})`}, ` +
       `which lasts ${shown(derived.totalDuration)} from first to last contact${full}.`,
-    `The radius ratio is ${shown(elements.radiusRatio)}, the impact parameter ${impact}, the semi-major axis ${shown(elements.scaledSemiMajorAxis)} stellar radii, ` +
-      `the inclination ${shown(elements.inclination)}.`,
+    `The radius ratio is ${shown(elements.radiusRatio)}, the impact parameter ${impact}` +
+      (elements.scaledSemiMajorAxis?.value === null
+        ? '; without a period the semi-major axis and the inclination are not known.'
+        : `, the semi-major axis ${shown(elements.scaledSemiMajorAxis)} stellar radii, the inclination ${shown(elements.inclination)}.`),
     radius,
     events.length === 0
       ? ''

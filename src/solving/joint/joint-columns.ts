@@ -49,7 +49,8 @@ export function jointReadings(
         key === 'inclination' ? values.transits[c]!.inclinationDeg : values.transits[c]![key],
     });
     return [
-      element('period', true),
+      // What one lone event leaves open shows its prior, not the data.
+      ...(companion.isPeriodUnknown ? [] : [element('period', true)]),
       element('timeOfInferiorConjunction', true),
       ...(companion.circular
         ? []
@@ -63,8 +64,9 @@ export function jointReadings(
         ? [
             transit('radiusRatio', true),
             transit('impactParameter', true),
-            transit('scaledSemiMajorAxis', true),
-            transit('inclination', false),
+            ...(companion.isPeriodUnknown
+              ? []
+              : [transit('scaledSemiMajorAxis', true), transit('inclination', false)]),
           ]
         : []),
     ];
