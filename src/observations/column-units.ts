@@ -1,4 +1,5 @@
 /** Which units and which time scale the chosen columns are in, and how that is known. Assumptions become notices. */
+import { upperMedian } from '../numerics/summary.js';
 import type { VelocityColumns } from './columns.js';
 import type { IssueList } from './issues.js';
 import { readLabel } from './labels.js';
@@ -189,7 +190,7 @@ function checkDates(
   notices: TableNotice[],
 ): void {
   if (times.length === 0) return;
-  const typical = Float64Array.from(times).sort()[times.length >> 1]!;
+  const typical = upperMedian(times)!;
   const sum = typical + (offsetDays ?? 0);
   if (sum >= SMALLEST_FULL_DATE && sum <= LARGEST_FULL_DATE) return;
   if ((offsetDays ?? 0) !== 0 && typical >= SMALLEST_FULL_DATE && typical <= LARGEST_FULL_DATE) {

@@ -3,7 +3,7 @@ import { quantileSorted, standardDeviation } from '../numerics/summary.js';
 import type { Quantity } from './types.js';
 
 /** Probability below one standard deviation under the mean of a Gaussian, and its mirror. */
-const LOWER_TAIL = 0.158655253931457;
+export const LOWER_TAIL = 0.158655253931457;
 
 export function unknownQuantity(unit: string, why: string): Quantity {
   return { value: null, sigma: null, lower: null, upper: null, unit, why };

@@ -2,6 +2,14 @@
 import type { TickedSeries } from './ticked-series.js';
 
 const TURN = 2 ** 32;
+const LARGEST_BIN_EXPONENT = 22;
+
+/** Exponent of the least power of two, 2^3 to 2^22, that is so many phase bins or more. */
+export function binExponentFor(binCount: number): number {
+  let exponent = 3;
+  while (2 ** exponent < binCount && exponent < LARGEST_BIN_EXPONENT) exponent++;
+  return exponent;
+}
 
 /** Best box of one folded series. Overwritten by the next scan. */
 export interface BestBox {

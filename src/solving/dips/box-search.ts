@@ -1,5 +1,5 @@
 /** Box-shaped dips over period, phase and duration [Kovacs2002]: the spectrum of a whole grid of periods. */
-import { BoxScan } from './box-scan.js';
+import { BoxScan, binExponentFor } from './box-scan.js';
 import { tickedSeries, type TickedSeries, type WeightedSeries } from './ticked-series.js';
 
 const TURN = 2 ** 32;
@@ -9,7 +9,6 @@ const BINS_PER_DURATION = 4;
 const TIME_BINS_PER_DURATION = 6;
 const TICKS_PER_DURATION = 32;
 const LEAST_TICKS_PER_DURATION = 8;
-const LARGEST_BIN_EXPONENT = 22;
 /** Periods share one set of time bins while their shortest durations differ by less than this factor. */
 const BAND = 1.4;
 const MOST_DURATIONS = 64;
@@ -105,9 +104,7 @@ export class BoxSearch {
   #prepareLengths(periodDays: number): void {
     const durations = this.#durations;
     const count = this.grid.durationsAt(periodDays, durations);
-    const wanted = (BINS_PER_DURATION * periodDays) / durations[0]!;
-    let exponent = 3;
-    while (2 ** exponent < wanted && exponent < LARGEST_BIN_EXPONENT) exponent++;
+    const exponent = binExponentFor((BINS_PER_DURATION * periodDays) / durations[0]!);
     const binCount = 2 ** exponent;
     let kept = 0;
     for (let k = 0; k < count; k++) {

@@ -1,20 +1,10 @@
 /** What the times of the data allow: events inside the span, and how short the period of a single event can be. */
+import { firstAtOrAfter } from './order-statistics.js';
 import type { WeightedSeries } from './ticked-series.js';
 import type { TrapezoidShape } from './trapezoid.js';
 
 /** An event would have been seen where this share of its usual number of points is there. */
 const SEEN_SHARE = 0.4;
-
-function firstAtOrAfter(times: Float64Array, time: number): number {
-  let low = 0;
-  let high = times.length;
-  while (low < high) {
-    const middle = (low + high) >> 1;
-    if (times[middle]! < time) low = middle + 1;
-    else high = middle;
-  }
-  return low;
-}
 
 /** Events between the first and the last time, with or without data. */
 export function eventsInSpan(timesDays: Float64Array, shape: TrapezoidShape): number {

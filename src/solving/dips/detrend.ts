@@ -16,7 +16,7 @@ export interface Detrended {
 }
 
 /** Rows of each table, in order of time. */
-export function rowsByTable(data: DipData): Uint32Array[] {
+function rowsByTable(data: DipData): Uint32Array[] {
   const { timesDays, segmentOf } = data;
   if (segmentOf === undefined) return [Uint32Array.from({ length: timesDays.length }, (_, i) => i)];
   const rows: number[][] = [];

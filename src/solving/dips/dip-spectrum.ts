@@ -1,4 +1,5 @@
 /** A stage of the search as it is reported and drawn. */
+import { counted } from '../../observations/text.js';
 import type { DipSpectrum } from '../transit-types.js';
 import type { BoxSearch } from './box-search.js';
 
@@ -18,7 +19,7 @@ export function spectrumOf(
     title:
       companions === 0
         ? 'light curve without its slow trend'
-        : `dips of ${companions} companion${companions === 1 ? '' : 's'} masked`,
+        : `dips of ${counted(companions, 'companion')} masked`,
     periodsDays,
     efficiency,
     peaks: peaks.map((index, rank) => ({
@@ -41,7 +42,7 @@ export function namedBy(spectrum: DipSpectrum, periodDays: number): DipSpectrum 
 }
 
 /** `2P`, `P/3`, `3P/2` ... for a ratio near that of small integers, `null` for none. */
-export function multipleOf(ratio: number): string | null {
+function multipleOf(ratio: number): string | null {
   for (let p = 1; p <= LARGEST_MULTIPLE; p++)
     for (let q = 1; q <= LARGEST_MULTIPLE; q++)
       if (Math.abs((ratio * q) / p - 1) < RATIO_WITHIN) {

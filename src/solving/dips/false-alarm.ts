@@ -23,7 +23,7 @@ export function searchVolume(grid: BoxGrid): number {
 }
 
 /** Probability that a standard normal variable exceeds `z`. */
-export function normalTail(z: number): number {
+function normalTail(z: number): number {
   return 0.5 * erfc(z / Math.SQRT2);
 }
 

@@ -1,4 +1,5 @@
 /** Whether a candidate may be believed, and if not, why not. */
+import { counted } from '../../observations/text.js';
 import type { BoxGrid } from './box-search.js';
 import type { TrapezoidShape } from './trapezoid.js';
 import type { DipCandidate } from './types.js';
@@ -97,7 +98,7 @@ export function judgeSingle(weighed: WeighedDip, settings: SearchSettings): Verd
   if (points < FEWEST_POINTS)
     return {
       kind: 'distrusted',
-      why: `a single event of ${points} point${points === 1 ? '' : 's'}; an accident does that (${FEWEST_POINTS} wanted)`,
+      why: `a single event of ${counted(points, 'point')}; an accident does that (${FEWEST_POINTS} wanted)`,
     };
   if (!weighed.events.every(({ isWhole }) => isWhole))
     return { kind: 'distrusted', why: 'a single event at the edge of a gap, without data on both sides' };

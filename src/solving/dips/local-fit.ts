@@ -1,5 +1,5 @@
 /** Robust local regression at one time. */
-import { medianInPlace, robustScatterInPlace } from './order-statistics.js';
+import { firstAtOrAfter, medianInPlace, robustScatterInPlace } from './order-statistics.js';
 
 /** Medians of narrow bins, with the number of points in each. */
 export interface LocalBins {
@@ -21,17 +21,6 @@ const TUNING = 4.685;
 const SIDE_SHARE = 0.3;
 const FEWEST_FOR_PARABOLA = 8;
 const FEWEST_FOR_LINE = 5;
-
-function firstAtOrAfter(times: Float64Array, time: number): number {
-  let low = 0;
-  let high = times.length;
-  while (low < high) {
-    const middle = (low + high) >> 1;
-    if (times[middle]! < time) low = middle + 1;
-    else high = middle;
-  }
-  return low;
-}
 
 /** Robust scatter of single bins from the differences of neighbours; `Infinity` where that is zero or there are few. */
 function scatterOfNeighbours(values: Float64Array): number {

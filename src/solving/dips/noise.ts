@@ -1,4 +1,5 @@
 /** What a detrended light curve scatters: the scale of its errors, its outliers, and its red noise. */
+import { upperMedian } from '../../numerics/summary.js';
 import { clippedRms, robustScatterInPlace } from './order-statistics.js';
 import type { WeightedSeries } from './ticked-series.js';
 
@@ -15,8 +16,7 @@ export function usualSpacingDays(timesDays: Float64Array): number {
   if (n < 2) return NaN;
   const spacings = new Float64Array(n - 1);
   for (let i = 1; i < n; i++) spacings[i - 1] = timesDays[i]! - timesDays[i - 1]!;
-  spacings.sort();
-  return spacings[(n - 1) >> 1]!;
+  return upperMedian(spacings)!;
 }
 
 /**
@@ -67,11 +67,8 @@ export function markOutliers(
  * fewer than eight bins are half full. Points without weight (dips, outliers) do not count.
  */
 export function redNoiseFactor(series: WeightedSeries, binDays: number): number {
-  return Math.max(1, scatterOfMeans(series, binDays));
-}
-
-function scatterOfMeans({ timesDays, values, weights }: WeightedSeries, binDays: number): number {
-  const means: number[] = [];
+  const { timesDays, values, weights } = series;
+  const totals: number[] = [];
   const sums: number[] = [];
   const n = timesDays.length;
   let i = 0;
@@ -85,12 +82,22 @@ function scatterOfMeans({ timesDays, values, weights }: WeightedSeries, binDays:
       i++;
     }
     if (w > 0) {
-      means.push(wx / Math.sqrt(w));
-      sums.push(w);
+      totals.push(w);
+      sums.push(wx);
     }
   }
-  if (means.length < FEWEST_BINS) return 1;
-  const usual = Float64Array.from(sums).sort()[means.length >> 1]!;
-  const full = Float64Array.from(means.filter((_, k) => sums[k]! >= 0.5 * usual));
-  return full.length < FEWEST_BINS ? 1 : clippedRms(full);
+  return scatterOfMeans(totals, sums);
+}
+
+/**
+ * Scatter of weighted means in units of what independent points give, at least 1; 1 where fewer than eight are half full.
+ *
+ * @param totals - weight of each, > 0
+ * @param sums - weighted sum of the values of each
+ */
+export function scatterOfMeans(totals: readonly number[], sums: readonly number[]): number {
+  if (totals.length < FEWEST_BINS) return 1;
+  const half = 0.5 * upperMedian(totals)!;
+  const full = sums.flatMap((sum, k) => (totals[k]! >= half ? [sum / Math.sqrt(totals[k]!)] : []));
+  return full.length < FEWEST_BINS ? 1 : Math.max(1, clippedRms(Float64Array.from(full)));
 }

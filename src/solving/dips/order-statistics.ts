@@ -1,4 +1,4 @@
-/** Medians of work arrays that may be reordered. */
+/** Medians of work arrays that may be reordered, and places in ascending ones. */
 
 /** Median; the values are sorted in place. `NaN` for none. */
 export function medianInPlace(values: Float64Array): number {
@@ -26,4 +26,16 @@ export function clippedRms(values: Float64Array): number {
     count++;
   }
   return count > 0 ? Math.sqrt(sum / count) : 0;
+}
+
+/** Index of the first of ascending times that is not before `time`; their number where all are. */
+export function firstAtOrAfter(times: Float64Array, time: number): number {
+  let low = 0;
+  let high = times.length;
+  while (low < high) {
+    const middle = (low + high) >> 1;
+    if (times[middle]! < time) low = middle + 1;
+    else high = middle;
+  }
+  return low;
 }

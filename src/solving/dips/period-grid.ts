@@ -34,7 +34,7 @@ export function periodGrid(
 }
 
 /** Durations from the shortest to the longest of a period, in equal ratios. */
-export function durationLadder(range: DurationRange): BoxGrid['durationsAt'] {
+function durationLadder(range: DurationRange): BoxGrid['durationsAt'] {
   return (periodDays, out) => {
     const longest = longestDurationDays(range, periodDays);
     let duration = shortestDurationDays(range, periodDays);
@@ -43,6 +43,22 @@ export function durationLadder(range: DurationRange): BoxGrid['durationsAt'] {
       out[count++] = duration;
       duration *= DURATION_RATIO;
     } while (duration < longest * 1.1 && count < out.length);
+    return count;
+  };
+}
+
+/** Durations from `shortestDays` to the first that reaches `longestDays`, in equal ratios; the same at every period. */
+export function fixedLadder(
+  shortestDays: number,
+  longestDays: number,
+  ratio: number,
+): BoxGrid['durationsAt'] {
+  return (_periodDays, out) => {
+    let count = 0;
+    for (let duration = shortestDays; count < out.length; duration *= ratio) {
+      out[count++] = duration;
+      if (duration >= longestDays) break;
+    }
     return count;
   };
 }

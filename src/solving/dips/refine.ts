@@ -1,6 +1,7 @@
 /** From a peak of the spectrum to the best trapezoid near it: a finer grid of boxes, then a downhill simplex on the points. */
 import { nelderMead } from '../../numerics/nelder-mead.js';
 import { BoxSearch } from './box-search.js';
+import { fixedLadder } from './period-grid.js';
 import type { WeightedSeries } from './ticked-series.js';
 import {
   fitTrapezoid,
@@ -43,14 +44,7 @@ export function refineNear(
   );
   const search = new BoxSearch(series, {
     frequenciesPerDay,
-    durationsAt: (_period, out) => {
-      let count = 0;
-      for (let d = bounds.shortestDays; count < out.length; d *= DURATION_RATIO) {
-        out[count++] = d;
-        if (d >= bounds.longestDays) break;
-      }
-      return count;
-    },
+    durationsAt: fixedLadder(bounds.shortestDays, bounds.longestDays, DURATION_RATIO),
   });
   let best = 0;
   for (let j = 1; j < frequenciesPerDay.length; j++)

@@ -51,12 +51,7 @@ export function searchDips(
 ): DipSearch {
   const settings = searchSettings(data, options);
   const isMasked = new Uint8Array(data.timesDays.length);
-  const hunt: Hunt = {
-    data,
-    settings,
-    isMasked,
-    light: detrended(data, isMasked, settings.windowDays, settings.loneLow),
-  };
+  const hunt: Hunt = { data, settings, isMasked, light: lightWithout(data, settings, isMasked) };
   const candidates: DipCandidate[] = [];
   const rejected: RejectedDip[] = [];
   const stages: DipSpectrum[] = [];
@@ -97,7 +92,7 @@ export function searchDips(
       distrusted++;
     }
     mask(hunt, dip.weighed.refined.shape, isMasked);
-    hunt.light = detrended(data, isMasked, settings.windowDays, settings.loneLow);
+    hunt.light = lightWithout(data, settings, isMasked);
   }
   const { trend, isOutlier, errorScales } = hunt.light;
   return {
@@ -114,6 +109,11 @@ export function searchDips(
   };
 }
 
+/** The light curve without its trend, which what is masked has no part in. */
+function lightWithout(data: DipData, { windowDays, loneLow }: SearchSettings, masked: Uint8Array): Detrended {
+  return detrended(data, masked, windowDays, loneLow);
+}
+
 /** Marks the dips of a shape. */
 function mask(hunt: Hunt, shape: TrapezoidShape, isMasked: Uint8Array): void {
   const reach = (0.5 + MASK_MARGIN) * shape.durationDays + 0.5 * hunt.settings.spacingDays;
@@ -126,7 +126,7 @@ function mask(hunt: Hunt, shape: TrapezoidShape, isMasked: Uint8Array): void {
 function remask(hunt: Hunt, shapes: readonly TrapezoidShape[]): void {
   hunt.isMasked.fill(0);
   for (const shape of shapes) mask(hunt, shape, hunt.isMasked);
-  hunt.light = detrended(hunt.data, hunt.isMasked, hunt.settings.windowDays, hunt.settings.loneLow);
+  hunt.light = lightWithout(hunt.data, hunt.settings, hunt.isMasked);
 }
 
 /** A dip with those of its every n-th event that an earlier candidate had taken; `null` where they do not belong together. */
@@ -151,12 +151,7 @@ function joinedWith(
 function seriesFor(hunt: Hunt, shape: TrapezoidShape): WeightedSeries {
   const masked = hunt.isMasked.slice();
   mask(hunt, shape, masked);
-  const { windowDays, loneLow } = hunt.settings;
-  return weightedSeries(
-    hunt.data.timesDays,
-    detrended(hunt.data, masked, windowDays, loneLow),
-    hunt.isMasked,
-  );
+  return weightedSeries(hunt.data.timesDays, lightWithout(hunt.data, hunt.settings, masked), hunt.isMasked);
 }
 
 /** Red noise over the duration of a dip, everywhere else. */

@@ -1,5 +1,6 @@
 /** The most significant box at any one time. */
 import { BoxSearch, type BoxPeak } from './box-search.js';
+import { fixedLadder } from './period-grid.js';
 import type { SearchSettings } from './search-settings.js';
 import type { WeightedSeries } from './ticked-series.js';
 
@@ -12,14 +13,7 @@ export function loudestSingle(series: WeightedSeries, settings: SearchSettings):
   const { singleBounds, spanDays } = settings;
   const search = new BoxSearch(series, {
     frequenciesPerDay: Float64Array.of(1 / (PERIOD_IN_SPANS * spanDays)),
-    durationsAt: (_period, out) => {
-      let count = 0;
-      for (let d = singleBounds.shortestDays; count < out.length; d *= DURATION_RATIO) {
-        out[count++] = d;
-        if (d >= singleBounds.longestDays) break;
-      }
-      return count;
-    },
+    durationsAt: fixedLadder(singleBounds.shortestDays, singleBounds.longestDays, DURATION_RATIO),
   });
   const peak = search.peakAt(0);
   if (!(peak.depth > 0)) return null;

@@ -1,5 +1,5 @@
 /** A dip as a trapezoid repeated with a period: the model of refined candidates. Its depth enters linearly. */
-import type { WeightedSeries } from './ticked-series.js';
+import { levelOf, type WeightedSeries } from './ticked-series.js';
 
 export interface TrapezoidShape {
   /** Days; `Infinity` for a dip that is seen once. */
@@ -77,17 +77,13 @@ export function levelOutside(series: WeightedSeries, shape: TrapezoidShape, reac
   const { timesDays, values, weights } = series;
   let outside = 0;
   let sum = 0;
-  let all = 0;
-  let allSum = 0;
   for (let i = 0; i < timesDays.length; i++) {
-    const w = weights[i]!;
-    all += w;
-    allSum += w * values[i]!;
     if (distanceDays(shape, timesDays[i]!) <= reachDays) continue;
+    const w = weights[i]!;
     outside += w;
     sum += w * values[i]!;
   }
-  return outside > 0 ? sum / outside : all > 0 ? allSum / all : 0;
+  return outside > 0 ? sum / outside : levelOf(series).mean;
 }
 
 /** Points within `reachDays` of a dip's middle that have weight. */

@@ -4,8 +4,7 @@
  * The trend removes red noise from what it sees, but not from a masked dip, so that the usual scatter of means would flatter it.
  */
 import { detrended, weightedSeries } from './detrend.js';
-import { redNoiseFactor } from './noise.js';
-import { clippedRms } from './order-statistics.js';
+import { redNoiseFactor, scatterOfMeans } from './noise.js';
 import type { SearchSettings } from './search-settings.js';
 import type { DipData } from './types.js';
 
@@ -14,7 +13,6 @@ const APART = 3;
 const PASSES = 2;
 /** A tenth of the duration on either side is masked too, as around a dip. */
 const MARGIN = 0.1;
-const FEWEST = 8;
 /** Means over these shares of the duration count too: all that a single night has enough of. */
 const SHORTER = [0.5, 0.25, 0.125] as const;
 
@@ -29,7 +27,7 @@ export function unseenNoiseFactor(
   durationDays: number,
 ): number {
   const { timesDays } = data;
-  const means: number[] = [];
+  const totals: number[] = [];
   const sums: number[] = [];
   let factor = 1;
   for (let pass = 0; pass < PASSES; pass++) {
@@ -53,15 +51,12 @@ export function unseenNoiseFactor(
       if (!(w > 0) || within < MARGIN || within > 1 + MARGIN) continue;
       if (number !== stretch) {
         stretch = number;
-        means.push(0);
+        totals.push(0);
         sums.push(0);
       }
-      means[means.length - 1]! += w * series.values[i]!;
-      sums[sums.length - 1]! += w;
+      totals[totals.length - 1]! += w;
+      sums[sums.length - 1]! += w * series.values[i]!;
     }
   }
-  if (means.length < FEWEST) return factor;
-  const usual = Float64Array.from(sums).sort()[sums.length >> 1]!;
-  const scaled = means.flatMap((mean, k) => (sums[k]! >= 0.5 * usual ? [mean / Math.sqrt(sums[k]!)] : []));
-  return scaled.length < FEWEST ? factor : Math.max(factor, clippedRms(Float64Array.from(scaled)));
+  return Math.max(factor, scatterOfMeans(totals, sums));
 }

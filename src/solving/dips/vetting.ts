@@ -1,5 +1,5 @@
 /** What else the folded light curve says about a dip: odd against even events, and dips at other phases. */
-import { BoxScan } from './box-scan.js';
+import { BoxScan, binExponentFor } from './box-scan.js';
 import { weightedDepth, type DipEvent } from './events.js';
 import { trialsFalseAlarm } from './false-alarm.js';
 import { tickedSeries, type WeightedSeries } from './ticked-series.js';
@@ -29,7 +29,7 @@ export function oddEvenOf(events: readonly DipEvent[], evenCycle: number): OddEv
 }
 
 /** The series without the points of a dip and a tenth of its duration on either side. */
-export function withoutDips(series: WeightedSeries, shape: TrapezoidShape): WeightedSeries {
+function withoutDips(series: WeightedSeries, shape: TrapezoidShape): WeightedSeries {
   const reach = 0.6 * shape.durationDays;
   return {
     ...series,
@@ -46,8 +46,7 @@ export function secondaryOf(
   const { periodDays, durationDays, midTimeDays, slopeShare } = shape;
   const boxDays = durationDays * (1 - slopeShare);
   const ticked = tickedSeries(withoutDips(series, shape), 0, boxDays / 64);
-  let exponent = 3;
-  while (2 ** exponent < (BINS_PER_DURATION * periodDays) / boxDays && exponent < 22) exponent++;
+  const exponent = binExponentFor((BINS_PER_DURATION * periodDays) / boxDays);
   const binDays = periodDays / 2 ** exponent;
   const length = Math.max(1, Math.round(boxDays / binDays));
   if (ticked.count === 0 || 2 * length >= 2 ** exponent) return null;

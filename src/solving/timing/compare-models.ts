@@ -5,7 +5,7 @@ import type { TimingModelRecord } from './types.js';
 /** BIC by which a model must be better than every simpler one. */
 export const BIC_THRESHOLD = 10;
 /** A sinusoid must be so unlikely to come from noise: its BIC knows nothing of the frequencies tried. */
-export const FALSE_ALARM_THRESHOLD = 0.001;
+const FALSE_ALARM_THRESHOLD = 0.001;
 
 export interface Verdict {
   readonly preferred: TimingModelName;

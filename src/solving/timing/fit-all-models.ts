@@ -2,7 +2,7 @@
 import { RandomStream } from '../../numerics/random.js';
 import { rootMeanSquare } from '../../numerics/summary.js';
 import { powerOfGain, sinusoidFalseAlarm, weightedVariance } from '../false-alarm.js';
-import { fitTimingModel, scatterOf, type FittedModel } from './fit-timing-model.js';
+import { fitTimingModel, type FittedModel } from './fit-timing-model.js';
 import { frequencyRange, type FrequencyRange } from './frequency-scan.js';
 import { jitterScale } from './jitter-profile.js';
 import {
@@ -47,7 +47,7 @@ export function fitAllModels(
   seed: number,
   onProgress: (share: number) => void,
 ): AllFits {
-  const scale = jitterScale(problem.times.sigmasDays, scatterOf(problem.yDays));
+  const scale = jitterScale(problem.times.sigmasDays, rootMeanSquare(problem.yDays));
   const models: FittedModel[] = [];
   const notTried: UntriedModelRecord[] = [];
   for (const [index, name] of MODEL_NAMES.entries()) {
@@ -67,15 +67,8 @@ export function fitAllModels(
   return { models, records, notTried };
 }
 
-function rangeOfCycles(problem: TimingProblem): number {
-  return 2 * problem.halfRange;
-}
-
 /** The largest number of half cycles of which all distances between events are multiples, in cycles. */
-export function cycleGrain(times: {
-  readonly cycles: Int32Array;
-  readonly isOccultation: Uint8Array;
-}): number {
+function cycleGrain(times: { readonly cycles: Int32Array; readonly isOccultation: Uint8Array }): number {
   let grain = 0;
   const first = 2 * times.cycles[0]! + times.isOccultation[0]!;
   for (let row = 1; row < times.cycles.length; row++) {
@@ -90,7 +83,7 @@ function rangeOf(
   problem: TimingProblem,
   wanted: ModelRangeDays,
 ): FrequencyRange | null {
-  const cycles = rangeOfCycles(problem);
+  const cycles = 2 * problem.halfRange;
   const period = problem.nearPeriodDays;
   const low =
     name === 'precessing'

@@ -1,5 +1,4 @@
 /** One model of mid-times: its maximum, its marginal likelihood, and its posterior as a mixture. */
-import { rootMeanSquare } from '../../numerics/summary.js';
 import { frequencyMesh, searchFrequency, type FrequencyMesh, type FrequencyRange } from './frequency-scan.js';
 import { bestJitter, jitterNodes, type JitterNodes, type JitterScale } from './jitter-profile.js';
 import { LinearSolver } from './linear-solver.js';
@@ -126,11 +125,6 @@ export function fitTimingModel(
     range,
     isAtEdge: range !== null && Math.min(frequency - range.low, range.high - frequency) < 0.5 * range.step,
   };
-}
-
-/** Spread of the residuals of a model that has no jitter yet, days. */
-export function scatterOf(residualsDays: Float64Array): number {
-  return rootMeanSquare(residualsDays);
 }
 
 interface Weighed {

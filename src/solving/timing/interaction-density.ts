@@ -6,6 +6,7 @@
  * Priors: mass ratios uniform above zero; e cos omega and e sin omega normal; jitters log-uniform above a fifth of the
  * median error (uniform in u, s = scale·sinh u); periods and epochs flat.
  */
+import { upperMedian } from '../../numerics/summary.js';
 import type { RandomStream } from '../../numerics/random.js';
 import { COORDINATES } from './interaction-model.js';
 import type { InteractionModel } from './interaction-model.js';
@@ -31,10 +32,9 @@ export class InteractionDensity {
     this.model = model;
     this.eccentricityScale = eccentricityScale;
     this.residuals = model.observedDays.map((times) => new Float64Array(times.length));
-    this.scales = model.likelihoods.map(({ baseWeights }) => {
-      const ascending = baseWeights.slice().sort();
-      return JITTER_SCALE / Math.sqrt(ascending[ascending.length >> 1]!);
-    });
+    this.scales = model.likelihoods.map(
+      ({ baseWeights }) => JITTER_SCALE / Math.sqrt(upperMedian(baseWeights)!),
+    );
     this.jittersDays = this.scales.map((scale) =>
       Float64Array.from({ length: NODES }, (_, k) => scale * Math.sinh((LARGEST_U * (k + 0.5)) / NODES)),
     );

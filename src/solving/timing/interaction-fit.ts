@@ -3,6 +3,7 @@
  * integrated, nothing is approximated but what `assumptions` says.
  */
 import { UsageError } from '../../errors.js';
+import { SECONDS_PER_DAY } from '../../orbit/constants.js';
 import { conjunctionTimes } from '../../orbit/interaction/conjunctions.js';
 import { companionRecords, correlation, resonanceRecords } from './interaction-companions.js';
 import { drawsOfCurvature, drawsOfPosterior } from './interaction-draws.js';
@@ -21,9 +22,9 @@ import type {
 const DEFAULT_ECCENTRICITY_SCALE = 0.1;
 const DEFAULT_DRAWS = 10_000;
 const DEFAULT_OUTLOOK = 0.25;
-const FEWEST_CYCLES = 4;
-const MOST_COMPANIONS = 5;
-const SECONDS_PER_DAY = 86_400;
+/** Different cycles that a table needs, and companions that can be integrated together. */
+export const FEWEST_CYCLES = 4;
+export const MOST_COMPANIONS = 5;
 /** A fit has converged when another undamped step promises to lower chi-square by less than this. */
 const NEGLIGIBLE_DECREASE = 0.1;
 

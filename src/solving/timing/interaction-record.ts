@@ -1,11 +1,9 @@
 /** A fit of interacting companions as it is recorded: plain, finite numbers with their units. */
 import { JUPITER_MASS_IN_EARTH } from '../../orbit/constants.js';
 import type { Quantity } from '../types.js';
+import { BIC_THRESHOLD } from './compare-models.js';
 import type { InteractionFit, InteractionPrediction, InteractionTable } from './interaction-types.js';
 import type { InteractingCompanion, InteractionRecord } from './system-types.js';
-
-/** A difference of BIC that counts. */
-const DECISIVE_BIC = 10;
 
 /** Predicted transits after a date, the first few of each companion. */
 export interface WantedPredictions {
@@ -23,7 +21,7 @@ export function interactionRecord(
   return {
     status: fit.status,
     usable: fit.usable,
-    needed: fit.usable && fit.deltaBic >= DECISIVE_BIC,
+    needed: fit.usable && fit.deltaBic >= BIC_THRESHOLD,
     epoch: fit.epochDays,
     companions: fit.companions.map(
       ({ mass, rmsMinutes, points, massRatioRange95, ...rest }): InteractingCompanion => ({

@@ -1,4 +1,5 @@
 /** What a fit of interacting companions assumes, and what must be known before its masses are believed. */
+import { BIC_THRESHOLD } from './compare-models.js';
 import {
   COORDINATES,
   LARGEST_ECCENTRICITY,
@@ -30,10 +31,10 @@ export function interactionWarnings(fit: Fit, points: readonly Float64Array[], b
       'interaction-not-converged',
       'the fit of the interacting orbits stopped before it had converged: its masses are not to be used',
     );
-  if (fit.deltaBic < 10)
+  if (fit.deltaBic < BIC_THRESHOLD)
     add(
       'interaction-not-needed',
-      `straight lines describe the times nearly as well (BIC ${fit.deltaBic.toFixed(1)} in favour of interaction; 10 or more would count): masses are upper limits at best`,
+      `straight lines describe the times nearly as well (BIC ${fit.deltaBic.toFixed(1)} in favour of interaction; ${BIC_THRESHOLD} or more would count): masses are upper limits at best`,
     );
   fit.companions.forEach(({ letter, massEccentricityCorrelation, massRatioRange95 }, c) => {
     const mass = Math.exp(best[COORDINATES * c]!);

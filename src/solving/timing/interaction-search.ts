@@ -87,7 +87,7 @@ class InteractionProblem implements LeastSquaresProblem {
 }
 
 /** Jitters of most likelihood at the model's present predictions, days; and ln L summed over the tables. */
-export function bestJitters(model: InteractionModel): {
+function bestJitters(model: InteractionModel): {
   readonly jittersDays: Float64Array;
   readonly logLikelihood: number;
 } {

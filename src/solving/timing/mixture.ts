@@ -5,6 +5,7 @@
 import { choleskyInPlace } from '../../numerics/linear-algebra.js';
 import type { RandomStream } from '../../numerics/random.js';
 import { erfc } from '../../numerics/special-functions.js';
+import { LOWER_TAIL } from '../quantities.js';
 import type { Quantity } from '../types.js';
 
 export interface MixtureNode {
@@ -80,7 +81,7 @@ function shareBelow(nodes: readonly MixtureNode[], functional: LinearFunctional,
 const QUANTILE_TOLERANCE = 1e-7;
 
 /** The value below which `probability` of the mixture lies: regula falsi with the Illinois correction, bisecting now and then. */
-export function mixtureQuantile(
+function mixtureQuantile(
   nodes: readonly MixtureNode[],
   functional: LinearFunctional,
   probability: number,
@@ -114,8 +115,6 @@ export function mixtureQuantile(
   }
   return low + (high - low) / 2;
 }
-
-const LOWER_TAIL = 0.158655253931457;
 
 /** A quantity with the given value and the interval of the mixture; `add` is added to value and bounds alike. */
 export function mixtureQuantity(

@@ -1,7 +1,7 @@
 /** The quantities of a fitted model, each with its interval from the mixture or from draws of it. */
 import { DAYS_PER_YEAR, RAD_PER_DEG, SECONDS_PER_DAY, TWO_PI } from '../../orbit/constants.js';
 import type { RandomStream } from '../../numerics/random.js';
-import { quantileSorted } from '../../numerics/summary.js';
+import { quantile } from '../../numerics/summary.js';
 import { centralInterval, unknownQuantity } from '../quantities.js';
 import type { Quantity } from '../types.js';
 import type { FittedModel } from './fit-timing-model.js';
@@ -22,7 +22,6 @@ import {
 import { TIMING_PARAMETER_UNITS, type TimingParameterKey, type TimingParameters } from './types.js';
 
 const MINUTES_PER_DAY = 1440;
-const SECONDS_PER_MINUTE = 60;
 const DRAWS = 8000;
 
 /** What is known of the system beside the times; `null` where it is not. */
@@ -136,32 +135,21 @@ export function modelParameters(
   const { nodes, form, beta, frequency } = model;
   const { halfRange: h } = problem;
   const parameters: Partial<Record<TimingParameterKey, Quantity>> = {};
-  const linear = (
-    rowOf: (node: MixtureNode, out: Float64Array) => number,
-  ): { quantity(unit: string, add: number): Quantity } => ({
-    quantity: (unit, add) => {
-      const row = new Float64Array(form.size);
-      const self: MixtureNode = { weight: 1, jitterDays: 0, frequency, beta, covariance: model.covariance };
-      let value = rowOf(self, row);
-      for (let k = 0; k < form.size; k++) value += row[k]! * beta[k]!;
-      return mixtureQuantity(nodes, linearFunctional(nodes, form.size, rowOf), value, unit, add);
-    },
-  });
-  const at =
-    (offset: number) =>
-    (node: MixtureNode, out: Float64Array): number =>
-      form.row(offset, false, node.frequency, out);
+  const linear = (rowOf: (node: MixtureNode, out: Float64Array) => number, addDays: number): Quantity => {
+    const row = new Float64Array(form.size);
+    const self: MixtureNode = { weight: 1, jitterDays: 0, frequency, beta, covariance: model.covariance };
+    let value = rowOf(self, row);
+    for (let k = 0; k < form.size; k++) value += row[k]! * beta[k]!;
+    return mixtureQuantity(nodes, linearFunctional(nodes, form.size, rowOf), value, 'd', addDays);
+  };
   const originDays = problem.times.originBjdTdb + problem.nearTimeDays;
   // Of the mean clock: what the model adds to it at the reference cycle is left out.
-  parameters.time = linear((_node, out) => (unitRow(0, 1, out), 0)).quantity('d', originDays);
-  parameters.timeAtZero = linear(at(-problem.referenceCycle)).quantity(
-    'd',
+  parameters.time = linear((_node, out) => (unitRow(0, 1, out), 0), originDays);
+  parameters.timeAtZero = linear(
+    (node, out) => form.row(-problem.referenceCycle, false, node.frequency, out),
     originDays - problem.nearPeriodDays * problem.referenceCycle,
   );
-  parameters.period = linear((_node, out) => (unitRow(1, 1 / h, out), 0)).quantity(
-    'd',
-    problem.nearPeriodDays,
-  );
+  parameters.period = linear((_node, out) => (unitRow(1, 1 / h, out), 0), problem.nearPeriodDays);
   const draws = drawMixture(nodes, form.size, DRAWS, random);
   const own = recipes(model, problem, facts);
   const modulationDays = frequency > 0 ? problem.nearPeriodDays / frequency : 0;
@@ -186,7 +174,6 @@ export function modelParameters(
 /** A time scale (or Q') of a change that may be zero has no upper end: its sigma would be that of the longest draw. */
 function tamed(key: TimingParameterKey, quantity: Quantity, values: Float64Array): Quantity {
   if (key !== 'changeTimescale' && key !== 'tidalQuality') return quantity;
-  const sorted = values.slice().sort();
   const lower = quantity.lower ?? 0;
   const upper = quantity.upper ?? 0;
   return {
@@ -194,7 +181,7 @@ function tamed(key: TimingParameterKey, quantity: Quantity, values: Float64Array
     sigma: (upper - lower) / 2,
     ...(upper > 10 * lower
       ? {
-          why: `the change may be zero; 95 % of the posterior lie above ${quantileSorted(sorted, 0.05).toPrecision(2)}`,
+          why: `the change may be zero; 95 % of the posterior lie above ${quantile(values, 0.05).toPrecision(2)}`,
         }
       : {}),
   };
@@ -231,10 +218,9 @@ function withSuppositions(
 /** Jitter in minutes with its interval from the mixture's draws. */
 export function jitterQuantity(model: FittedModel, random: RandomStream): Quantity {
   const draws = drawMixture(model.nodes, model.form.size, DRAWS, random);
-  const minutes = SECONDS_PER_DAY / SECONDS_PER_MINUTE;
   return centralInterval(
-    model.jitterDays * minutes,
-    draws.jittersDays.map((jitter) => jitter * minutes),
+    model.jitterDays * MINUTES_PER_DAY,
+    draws.jittersDays.map((jitter) => jitter * MINUTES_PER_DAY),
     'min',
   );
 }

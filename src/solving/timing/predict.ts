@@ -1,7 +1,7 @@
 /** When the next events come, and how a model runs along the cycles, each with the uncertainty of the prediction itself. */
 import type { Quantity } from '../types.js';
 import type { FittedModel } from './fit-timing-model.js';
-import { linearFunctional, mixtureMoments, mixtureQuantity } from './mixture.js';
+import { linearFunctional, mixtureMoments, mixtureQuantity, type LinearFunctional } from './mixture.js';
 import type { TimingProblem } from './model-forms.js';
 import type { PredictionRecord, TimingCurve } from './types.js';
 
@@ -10,7 +10,7 @@ const MINUTES_PER_DAY = 1440;
 const MOST_CYCLES_AHEAD = 1e7;
 
 /** Time of an event by the best coefficients, days since the origin. */
-export function eventDays(
+function eventDays(
   model: FittedModel,
   problem: TimingProblem,
   cycle: number,
@@ -28,6 +28,19 @@ function nearDays(problem: TimingProblem, cycle: number, isOccultation: boolean)
   return problem.nearTimeDays + problem.nearPeriodDays * (cycle - problem.referenceCycle + halves);
 }
 
+/** What a model adds to the near ephemeris at an event, in every node of its posterior. */
+function departureOf(
+  model: FittedModel,
+  problem: TimingProblem,
+  cycle: number,
+  isOccultation: boolean,
+): LinearFunctional {
+  const offset = cycle - problem.referenceCycle;
+  return linearFunctional(model.nodes, model.form.size, (node, out) =>
+    model.form.row(offset, isOccultation, node.frequency, out),
+  );
+}
+
 /** BJD_TDB of an event, its interval from all nodes of the posterior. */
 export function eventQuantity(
   model: FittedModel,
@@ -36,10 +49,7 @@ export function eventQuantity(
   isOccultation: boolean,
 ): Quantity {
   const near = nearDays(problem, cycle, isOccultation);
-  const offset = cycle - problem.referenceCycle;
-  const functional = linearFunctional(model.nodes, model.form.size, (node, out) =>
-    model.form.row(offset, isOccultation, node.frequency, out),
-  );
+  const functional = departureOf(model, problem, cycle, isOccultation);
   const value = eventDays(model, problem, cycle, isOccultation) - near;
   return mixtureQuantity(model.nodes, functional, value, 'd', near + problem.times.originBjdTdb);
 }
@@ -51,15 +61,12 @@ function eventSigma(
   cycle: number,
   isOccultation: boolean,
 ): number {
-  const offset = cycle - problem.referenceCycle;
-  const functional = linearFunctional(model.nodes, model.form.size, (node, out) =>
-    model.form.row(offset, isOccultation, node.frequency, out),
-  );
+  const functional = departureOf(model, problem, cycle, isOccultation);
   return mixtureMoments(model.nodes, functional).sigma;
 }
 
 /** First cycle whose event lies after a date. */
-export function firstCycleAfter(
+function firstCycleAfter(
   model: FittedModel,
   problem: TimingProblem,
   afterDays: number,

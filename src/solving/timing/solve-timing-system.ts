@@ -1,9 +1,10 @@
 /** Mid-times of several companions in; the ephemeris of each and the orbits that pull at each other out. */
 import { ConvergenceError, InputDataError, UsageError, type InputIssue } from '../../errors.js';
 import type { MidTimeTable } from '../../observations/photometry-types.js';
+import { counted } from '../../observations/text.js';
 import type { Measured } from '../../observations/types.js';
 import { starQuantity } from '../describe-solution.js';
-import { fitInteraction } from './interaction-fit.js';
+import { FEWEST_CYCLES, fitInteraction, MOST_COMPANIONS } from './interaction-fit.js';
 import { interactionRecord } from './interaction-record.js';
 import type { InteractionFit, InteractionTable } from './interaction-types.js';
 import { solveTiming, type TimingChoices } from './solve-timing.js';
@@ -29,8 +30,6 @@ export interface CompanionTables {
 type Solved = TimingSystemSolved['companions'][number];
 type Warning = TimingSystemSolved['record']['warnings'][number];
 
-const FEWEST_CYCLES = 4;
-const MOST_COMPANIONS = 5;
 /** Integrated predictions run on for this share of the span at least, and at most. */
 const OUTLOOK = { least: 0.25, most: 2 };
 /** Shares of the work. */
@@ -135,7 +134,7 @@ function whyNotTried(tables: readonly InteractionTable[]): string | null {
   const short = tables.flatMap(({ letter, cycles }) => {
     const different = new Set(Array.from(cycles)).size;
     return different < FEWEST_CYCLES
-      ? [`companion ${letter} has mid-transits of ${different} cycle${different === 1 ? '' : 's'}`]
+      ? [`companion ${letter} has mid-transits of ${counted(different, 'cycle')}`]
       : [];
   });
   return short.length === 0 ? null : `${short.join(', ')}, and ${FEWEST_CYCLES} of each are needed`;

@@ -1,13 +1,13 @@
 /** Mid-times in; ephemeris, models and predictions out. */
 import { InputDataError } from '../../errors.js';
-import { median } from '../../numerics/summary.js';
+import { median, rootMeanSquare } from '../../numerics/summary.js';
 import type { MidTimeTable } from '../../observations/photometry-types.js';
 import { relativeSemiMajorAxisAu } from '../../orbit/masses.js';
 import { SECONDS_PER_DAY } from '../../orbit/constants.js';
 import { verdictOn } from './compare-models.js';
 import { numberCycles, type NumberingChoices } from './cycles.js';
 import type { Numbering } from './written-cycles.js';
-import { fitTimingModel, scatterOf, type FittedModel } from './fit-timing-model.js';
+import { fitTimingModel, type FittedModel } from './fit-timing-model.js';
 import { jitterScale } from './jitter-profile.js';
 import { fitAllModels, type ModelRangeDays } from './fit-all-models.js';
 import { mixtureMoments, linearFunctional } from './mixture.js';
@@ -159,7 +159,7 @@ function centredProblem(
   const middle = Math.round(median(times.cycles));
   const first = timingProblem(times, near, middle);
   const form = modelForm('linear', first);
-  const scale = jitterScale(times.sigmasDays, scatterOf(first.yDays));
+  const scale = jitterScale(times.sigmasDays, rootMeanSquare(first.yDays));
   const fit = fitTimingModel(first, form, scale, null, 0);
   if (fit === null) throw new RangeError('a straight line through times of two or more cycles is determined');
   const near2 = {

@@ -1,4 +1,5 @@
 /** Mid-times of all tables in one set, ready for the solver. */
+import { lineList } from '../../observations/text.js';
 import type { MidTimeTable } from '../../observations/photometry-types.js';
 
 /** Where a mid-time was read. */
@@ -36,17 +37,14 @@ export interface TimingNotice {
   readonly message: string;
 }
 
-/** `"a.csv" lines 3, 5; "b.csv" line 7`, at most `most` rows. */
+/** `"a.csv" lines 3, 5; "b.csv" line 7`, at most `most` rows (8 at most). */
 export function placesOf(times: MidTimes, rows: readonly number[], most = 8): string {
   const byPath = new Map<string, number[]>();
   for (const row of rows.slice(0, most)) {
     const { path, line } = times.origins[row]!;
     byPath.set(path, [...(byPath.get(path) ?? []), line]);
   }
-  const parts = Array.from(
-    byPath,
-    ([path, lines]) => `"${path}" line${lines.length === 1 ? '' : 's'} ${lines.join(', ')}`,
-  );
+  const parts = Array.from(byPath, ([path, lines]) => `"${path}" ${lineList(lines)}`);
   const more = rows.length > most ? ` and ${rows.length - most} more` : '';
   return parts.join('; ') + more;
 }
