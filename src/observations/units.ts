@@ -2,7 +2,7 @@
  * Units at the file edge: the only place where a written unit becomes a factor. Inside, times are days, velocities m/s,
  * angles degrees, star mass and radius solar (nominal, IAU 2015 Resolution B3), temperatures kelvin.
  */
-import { DAYS_PER_YEAR, SECONDS_PER_DAY } from '../orbit/constants.js';
+import { DAYS_PER_YEAR, MINUTES_PER_DAY, SECONDS_PER_DAY } from '../orbit/constants.js';
 
 /** What a number in a case or on the command line stands for. */
 export type QuantityKind =
@@ -17,7 +17,6 @@ interface UnitList {
 }
 
 const HOURS_PER_DAY = 24;
-const MINUTES_PER_DAY = 1440;
 const DEGREES_PER_RADIAN = 180 / Math.PI;
 /** sigma_F = 0.921 F sigma_m: the derivative of F = 10^(-0.4 m). */
 export const FLUX_PER_MAGNITUDE: number = 0.4 * Math.LN10;

@@ -31,6 +31,7 @@ export const GRAVITATIONAL_CONSTANT = 6.6743e-11;
 
 /** By definition. */
 export const SECONDS_PER_DAY = 86_400;
+export const MINUTES_PER_DAY = 1440;
 /** Julian year, by definition. */
 export const DAYS_PER_YEAR = 365.25;
 export const TWO_PI: number = 2 * Math.PI;

@@ -1,4 +1,5 @@
 /** Variation of the mid-times of one of several interacting companions, with the integrated model and what it predicts. */
+import { MINUTES_PER_DAY } from '../../orbit/constants.js';
 import type { ChartConfiguration, ChartDataset } from 'chart.js';
 import type { InteractionFit, InteractionTable } from '../../solving/timing/interaction-types.js';
 import { axis, leftAxisWidthPx, paddedRange } from './axes.js';
@@ -15,7 +16,6 @@ import { BAND_COLOUR, commonOptions, markerRadius, markerStyle, MODEL_COLOUR, ti
 import { timeOffset } from './velocities-chart.js';
 import { markedPoints, zeroLine } from './panel-parts.js';
 
-const MINUTES_PER_DAY = 1440;
 const HEIGHT_MM = 84;
 const DATA_LABEL = 'observed';
 const MODEL_LABEL = 'interacting orbits';

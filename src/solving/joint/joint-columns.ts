@@ -1,10 +1,11 @@
 /** Everything that varies in a joint model as named numbers in the units of `solution.json`. */
+import { MINUTES_PER_DAY } from '../../orbit/constants.js';
 import type { ElementKey, PosteriorColumn, PosteriorDraws } from '../types.js';
 import { ELEMENT_UNITS } from '../uncertainties.js';
 import { TRANSIT_ELEMENT_UNITS, type TransitElementKey } from '../transit-types.js';
 import type { JointDensity } from './joint-density.js';
 import type { JointSample } from './joint-posterior.js';
-import { jointValues, MINUTES_PER_DAY, type JointValues, type References } from './joint-values.js';
+import { jointValues, type JointValues, type References } from './joint-values.js';
 
 export interface JointReading {
   readonly key: string;

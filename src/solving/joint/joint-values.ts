@@ -1,5 +1,4 @@
 /** One point of a joint model as the numbers that are reported. */
-import { SECONDS_PER_DAY } from '../../orbit/constants.js';
 import {
   fullDurationDays,
   inclinationFromImpactParameterRad,
@@ -127,5 +126,3 @@ export function referencesOf(density: JointDensity, position: Float64Array): Ref
     conjunction: values.timeOfInferiorConjunction,
   }));
 }
-
-export const MINUTES_PER_DAY: number = SECONDS_PER_DAY / 60;

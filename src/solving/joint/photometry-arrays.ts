@@ -1,4 +1,5 @@
 /** The arrays about transits that charts and tables need. */
+import { MINUTES_PER_DAY } from '../../orbit/constants.js';
 import type { LightCurveTable } from '../../observations/photometry-types.js';
 import { LightCurveKernel, TRANSIT_COORDINATES } from '../../signals/transit/light-curve-kernel.js';
 import type { MidTimeOrigin } from '../timing/timing-data.js';
@@ -14,7 +15,7 @@ import type {
 import type { TimedEvent } from './event-times.js';
 import type { TransitSearch } from './found-transit.js';
 import type { JointSampled } from './joint-sampled.js';
-import { MINUTES_PER_DAY } from './joint-values.js';
+
 import { CONJUNCTION, LOG_PERIOD } from './natural.js';
 import type { SettledJoint } from './settle-joint.js';
 

@@ -1,4 +1,5 @@
 /** The part of the record that light curves and mid-times fill. */
+import { MINUTES_PER_DAY } from '../../orbit/constants.js';
 import { rootMeanSquare } from '../../numerics/summary.js';
 import type { Case } from '../../observations/types.js';
 import { meanDensityGramsPerCm3 } from '../../orbit/star-density.js';
@@ -15,7 +16,7 @@ import type { Quantity } from '../types.js';
 import type { TransitSearch } from './found-transit.js';
 import type { TimedEvent } from './event-times.js';
 import type { JointSampled } from './joint-sampled.js';
-import { MINUTES_PER_DAY, type JointValues } from './joint-values.js';
+import type { JointValues } from './joint-values.js';
 import { CONJUNCTION, LOG_PERIOD } from './natural.js';
 import { refusedDips } from './photometry-arrays.js';
 import type { SettledJoint } from './settle-joint.js';

@@ -1,7 +1,7 @@
 /** What the masses of a joint solution predict for the mid-times of companions that transit: they pull at each other. */
 import { median } from '../../numerics/summary.js';
 import type { Observations } from '../../observations/photometry-types.js';
-import { RAD_PER_DEG } from '../../orbit/constants.js';
+import { MINUTES_PER_DAY, RAD_PER_DEG } from '../../orbit/constants.js';
 import { companionMassSolar, massFunctionSolar } from '../../orbit/masses.js';
 import type { ElementValues } from '../elements-report.js';
 import { centralInterval, unknownQuantity } from '../quantities.js';
@@ -14,7 +14,7 @@ import type { FittedMidTimes, PredictedInteractionRecord } from '../transit-type
 import type { Quantity } from '../types.js';
 import type { JointResult } from './joint-result.js';
 import type { JointSampled } from './joint-sampled.js';
-import { MINUTES_PER_DAY } from './joint-values.js';
+
 import { averaged, departuresOf, followed, shifted, type Departure } from './integrated-orbits.js';
 import { resonanceOf, superPeriodSwings } from './resonant-pairs.js';
 

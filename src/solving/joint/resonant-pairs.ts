@@ -1,4 +1,5 @@
 /** Companions near a resonance of first order, and how far their mid-times then swing. */
+import { MINUTES_PER_DAY } from '../../orbit/constants.js';
 import {
   nearestResonance,
   nearResonantVariation,
@@ -10,7 +11,6 @@ import {
 import type { PredictedCompanion } from '../timing/interaction-predict.js';
 import { FARTHEST_RESONANCE } from '../timing/interaction-starts.js';
 import type { PredictedInteractionRecord } from '../transit-types.js';
-import { MINUTES_PER_DAY } from './joint-values.js';
 
 const SMALL_ECCENTRICITY = 0.01;
 

@@ -1,4 +1,5 @@
 /** Every model that the times can carry, fitted and described; the others with the reason. */
+import { MINUTES_PER_DAY } from '../../orbit/constants.js';
 import { RandomStream } from '../../numerics/random.js';
 import { rootMeanSquare } from '../../numerics/summary.js';
 import { powerOfGain, sinusoidFalseAlarm, weightedVariance } from '../false-alarm.js';
@@ -27,7 +28,6 @@ export interface AllFits {
   readonly notTried: readonly UntriedModelRecord[];
 }
 
-const MINUTES_PER_DAY = 1440;
 /** A modulation longer than this many ranges of the data is a parabola. */
 const LONGEST_MODULATION_IN_RANGES = 1.5;
 /** Cycles of a modulation between two events: nothing faster can be told from something slower. */

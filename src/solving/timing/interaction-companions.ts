@@ -1,7 +1,7 @@
 /** The record of each companion of a fit of interacting orbits. */
 import { quantile, rootMeanSquare, standardDeviation } from '../../numerics/summary.js';
 import { RandomStream } from '../../numerics/random.js';
-import { SOLAR_MASS_IN_EARTH } from '../../orbit/constants.js';
+import { MINUTES_PER_DAY, SOLAR_MASS_IN_EARTH } from '../../orbit/constants.js';
 import {
   nearestResonance,
   resonanceCoefficients,
@@ -23,7 +23,6 @@ import type {
   ResonanceRecord,
 } from './interaction-types.js';
 
-const MINUTES_PER_DAY = 1440;
 /** Eccentricities of the second look at the masses, in units of the prior's width. */
 const LOW_ECCENTRICITY = 1 / 3;
 const FEWEST_EFFECTIVE = 100;

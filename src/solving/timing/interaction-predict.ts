@@ -1,8 +1,7 @@
 /** What a solution predicts for the mid-times when its companions pull at each other. */
+import { MINUTES_PER_DAY } from '../../orbit/constants.js';
 import { ModelDomainError } from '../../errors.js';
 import { conjunctionTimes } from '../../orbit/interaction/conjunctions.js';
-
-const MINUTES_PER_DAY = 1440;
 
 export interface PredictedCompanion {
   readonly letter: string;

@@ -1,4 +1,5 @@
 /** What draws of masses and eccentricities mean for osculating elements, jitters and mid-times, observed and to come. */
+import { MINUTES_PER_DAY } from '../../orbit/constants.js';
 import { RandomStream } from '../../numerics/random.js';
 import { InteractionDensity } from './interaction-density.js';
 import type { InteractionDraws } from './interaction-draws.js';
@@ -6,7 +7,6 @@ import type { InteractionModel } from './interaction-model.js';
 import type { InteractionSolution } from './interaction-search.js';
 import type { InteractionPrediction, InteractionTable } from './interaction-types.js';
 
-const MINUTES_PER_DAY = 1440;
 /** So many draws are integrated once more. */
 const MOST_FOLLOWED = 300;
 const STREAM = 2;

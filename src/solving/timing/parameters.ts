@@ -1,5 +1,11 @@
 /** The quantities of a fitted model, each with its interval from the mixture or from draws of it. */
-import { DAYS_PER_YEAR, RAD_PER_DEG, SECONDS_PER_DAY, TWO_PI } from '../../orbit/constants.js';
+import {
+  DAYS_PER_YEAR,
+  MINUTES_PER_DAY,
+  RAD_PER_DEG,
+  SECONDS_PER_DAY,
+  TWO_PI,
+} from '../../orbit/constants.js';
 import type { RandomStream } from '../../numerics/random.js';
 import { quantile } from '../../numerics/summary.js';
 import { centralInterval, unknownQuantity } from '../quantities.js';
@@ -21,7 +27,6 @@ import {
 } from './physics.js';
 import { TIMING_PARAMETER_UNITS, type TimingParameterKey, type TimingParameters } from './types.js';
 
-const MINUTES_PER_DAY = 1440;
 const DRAWS = 8000;
 
 /** What is known of the system beside the times; `null` where it is not. */

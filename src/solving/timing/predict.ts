@@ -1,11 +1,11 @@
 /** When the next events come, and how a model runs along the cycles, each with the uncertainty of the prediction itself. */
+import { MINUTES_PER_DAY } from '../../orbit/constants.js';
 import type { Quantity } from '../types.js';
 import type { FittedModel } from './fit-timing-model.js';
 import { linearFunctional, mixtureMoments, mixtureQuantity, type LinearFunctional } from './mixture.js';
 import type { TimingProblem } from './model-forms.js';
 import type { PredictionRecord, TimingCurve } from './types.js';
 
-const MINUTES_PER_DAY = 1440;
 /** Bounds the search for the first event after a date far away. */
 const MOST_CYCLES_AHEAD = 1e7;
 

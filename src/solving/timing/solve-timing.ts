@@ -3,7 +3,7 @@ import { InputDataError } from '../../errors.js';
 import { median, rootMeanSquare } from '../../numerics/summary.js';
 import type { MidTimeTable } from '../../observations/photometry-types.js';
 import { relativeSemiMajorAxisAu } from '../../orbit/masses.js';
-import { SECONDS_PER_DAY } from '../../orbit/constants.js';
+import { MINUTES_PER_DAY, SECONDS_PER_DAY } from '../../orbit/constants.js';
 import { verdictOn } from './compare-models.js';
 import { numberCycles, type NumberingChoices } from './cycles.js';
 import type { Numbering } from './written-cycles.js';
@@ -38,7 +38,6 @@ export interface TimingChoices extends NumberingChoices {
   readonly onProgress?: (stage: string, fraction: number) => void;
 }
 
-const MINUTES_PER_DAY = 1440;
 const FEWEST_TIMES = 3;
 /** Curves run on into the future by this share of the range of the cycles, and at least to the last prediction. */
 const FUTURE_SHARE = 0.2;

@@ -1,4 +1,5 @@
 /** What a solution of mid-times assumes, and what its reader should be warned of. */
+import { MINUTES_PER_DAY } from '../../orbit/constants.js';
 import { median, medianAbsoluteDeviation } from '../../numerics/summary.js';
 import type { MidTimeTable } from '../../observations/photometry-types.js';
 import type { FittedModel } from './fit-timing-model.js';
@@ -12,7 +13,6 @@ import { lightTimeAcrossSeconds } from './physics.js';
 import { placesOf, type NumberedTimes, type TimingNotice } from './timing-data.js';
 import type { TimingRecord } from './types.js';
 
-const MINUTES_PER_DAY = 1440;
 /** Rows further away than this many times the usual scatter are named. */
 const OUTLIER_BEYOND = 5;
 const NORMAL_MAD = 1.4826;
