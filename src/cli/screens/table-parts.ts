@@ -1,4 +1,5 @@
 /** What the screens of all kinds of tables share: head, columns, notices, dates. */
+import { counted } from '../../observations/text.js';
 import type { ColumnReading, TableNotice, TimeScale } from '../../observations/types.js';
 import { plainLabel } from '../../dossier/escape.js';
 import { significant } from '../../dossier/numbers.js';
@@ -74,5 +75,5 @@ export function screenOf(heading: string, body: readonly string[], paint: Termin
 /** `data/north.csv: 48 rows, 2 left out`. */
 export function headingOf(path: string, rows: number, used: number, rest: string): string {
   const left = rows - used;
-  return `${plainLabel(path, 60)}: ${rows} rows${left === 0 ? '' : `, ${left} left out`}, ${rest}`;
+  return `${plainLabel(path, 60)}: ${counted(rows, 'row')}${left === 0 ? '' : `, ${left} left out`}, ${rest}`;
 }
